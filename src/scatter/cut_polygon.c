@@ -1,0 +1,81 @@
+/* cut_polygon.c - convex polygons on a facet, cut by half-planes */
+#include "scatter/cut_polygon.h"
+
+/* A polygon of less than this share of the facet is rounding: its corners carry some 2^-50. */
+#define SLIVER 0x1p-46
+
+double rg_half_plane_at(const rg_half_plane *plane, double a, double b)
+{
+    const double *f = plane->at_corner;
+    return f[0] * (1.0 - a - b) + f[1] * a + f[2] * b;
+}
+
+double rg_polygon_area2(const rg_polygon *p)
+{
+    double sum = 0.0;
+    for (int i = 1; i + 1 < p->n; i++)
+        sum += (p->a[i] - p->a[0]) * (p->b[i + 1] - p->b[0]) - (p->b[i] - p->b[0]) * (p->a[i + 1] - p->a[0]);
+    return sum;
+}
+
+static bool add_corner(rg_polygon *p, double a, double b)
+{
+    if (p->n == RG_POLYGON_ROOM) return false;
+    p->a[p->n] = a;
+    p->b[p->n] = b;
+    p->n++;
+    return true;
+}
+
+/* Both sides of a cut; a side without area comes out with n = 0. */
+static bool split(const rg_polygon *p, const rg_half_plane *plane, rg_polygon *inside, rg_polygon *outside)
+{
+    double f[RG_POLYGON_ROOM];
+    bool any_in = false, any_out = false, fits = true;
+    for (int i = 0; i < p->n; i++) {
+        f[i] = rg_half_plane_at(plane, p->a[i], p->b[i]);
+        any_in |= f[i] > 0.0;
+        any_out |= f[i] < 0.0;
+    }
+    inside->n = outside->n = 0;
+    if (!any_out || !any_in) {
+        *(any_in ? inside : outside) = *p;
+        return true;
+    }
+    for (int i = 0; i < p->n; i++) {
+        const int next = i + 1 < p->n ? i + 1 : 0;
+        if (f[i] >= 0.0) fits &= add_corner(inside, p->a[i], p->b[i]);
+        if (f[i] <= 0.0) fits &= add_corner(outside, p->a[i], p->b[i]);
+        if ((f[i] > 0.0 && f[next] < 0.0) || (f[i] < 0.0 && f[next] > 0.0)) {
+            const double t = f[i] / (f[i] - f[next]);
+            const double a = p->a[i] + t * (p->a[next] - p->a[i]), b = p->b[i] + t * (p->b[next] - p->b[i]);
+            fits &= add_corner(inside, a, b);
+            fits &= add_corner(outside, a, b);
+        }
+    }
+    if (rg_polygon_area2(inside) < SLIVER) inside->n = 0;
+    if (rg_polygon_area2(outside) < SLIVER) outside->n = 0;
+    return fits;
+}
+
+bool rg_polygon_minus(const rg_polygon *polygon, const rg_region *region, size_t room, rg_polygon out[], size_t *n)
+{
+    rg_polygon rest = *polygon;
+    *n = 0;
+    for (int e = 0; e < region->n; e++) {
+        rg_polygon inside, outside;
+        if (!split(&rest, &region->edge[e], &inside, &outside)) return false;
+        if (inside.n == 0) {                                /* no overlap: the cuts so far were for nothing */
+            if (room == 0) return false;
+            out[0] = *polygon;
+            *n = 1;
+            return true;
+        }
+        if (outside.n > 0) {
+            if (*n == room) return false;
+            out[(*n)++] = outside;
+        }
+        rest = inside;
+    }
+    return true;
+}

@@ -1,0 +1,30 @@
+/* cut_polygon.h - convex polygons on a facet, cut by half-planes
+ *
+ * Points are barycentric: (a, b) weighs the facet's corners 1 and 2. A half-plane is given by its values at the facet's three
+ * corners, so nothing here knows the facet's shape, and a facet seen almost edge-on is cut as well as any.
+ */
+#ifndef RG_SCATTER_CUT_POLYGON_H
+#define RG_SCATTER_CUT_POLYGON_H
+#include <stdbool.h>
+#include <stddef.h>
+
+enum { RG_POLYGON_ROOM = 12, RG_OCCLUDER_EDGES = 4 };
+
+typedef struct { int n; double a[RG_POLYGON_ROOM], b[RG_POLYGON_ROOM]; } rg_polygon;
+
+/* Positive inside. */
+typedef struct { double at_corner[3]; } rg_half_plane;
+
+/* A convex region: what one occluder hides of the facet. */
+typedef struct { int n; rg_half_plane edge[RG_OCCLUDER_EDGES]; } rg_region;
+
+double rg_half_plane_at(const rg_half_plane *plane, double a, double b);
+
+/* Twice the area as a share of twice the facet's; positive for counter-clockwise. */
+double rg_polygon_area2(const rg_polygon *polygon);
+
+/* Writes polygon without region as convex polygons to out[0 .. *n - 1]; exactly polygon itself where they do not overlap. Returns false,
+ * with *n of no meaning, when room polygons do not suffice or one would have more than RG_POLYGON_ROOM corners. */
+bool rg_polygon_minus(const rg_polygon *polygon, const rg_region *region, size_t room, rg_polygon out[], size_t *n);
+
+#endif

@@ -1,0 +1,103 @@
+/* occluder.c - what one facet hides of another along the line of sight */
+#include "scatter/occluder.h"
+#include <float.h>
+#include <math.h>
+#include <string.h>
+
+static void cross(const double a[3], const double b[3], double out[3])
+{
+    out[0] = a[1] * b[2] - a[2] * b[1];
+    out[1] = a[2] * b[0] - a[0] * b[2];
+    out[2] = a[0] * b[1] - a[1] * b[0];
+}
+
+bool rg_face_seen(rg_face *face, const rg_mesh *mesh, const rg_seen *seen, uint32_t facet)
+{
+    double edge[2][3], edges_m = 0.0;
+    face->index = facet;
+    for (int i = 0; i < 3; i++) {
+        face->vertex[i] = mesh->facet[facet][i];
+        memcpy(face->at_m[i], seen->at_m[face->vertex[i]], sizeof face->at_m[i]);
+    }
+    for (int e = 0; e < 2; e++)
+        for (int i = 0; i < 3; i++) {
+            edge[e][i] = face->at_m[e + 1][i] - face->at_m[0][i];
+            edges_m += fabs(edge[e][i]);
+        }
+    cross(edge[0], edge[1], face->normal_m2);
+    /* The corners carry roundings of some reach * 2^-53, and so does the shown area, times the edges. */
+    if (fabs(face->normal_m2[2]) <= 4.0 * DBL_EPSILON * seen->reach_m * edges_m) return false;
+    if (face->normal_m2[2] > 0.0) return true;
+    if (mesh->shells[mesh->shell[facet]].closed) return false;
+    const uint32_t vertex = face->vertex[1];
+    face->vertex[1] = face->vertex[2];
+    face->vertex[2] = vertex;
+    for (int i = 0; i < 3; i++) {
+        const double at_m = face->at_m[1][i];
+        face->at_m[1][i] = face->at_m[2][i];
+        face->at_m[2][i] = at_m;
+        face->normal_m2[i] = -face->normal_m2[i];
+    }
+    return true;
+}
+
+/* Twice the signed area of edge e of face with x, in the plane across the line of sight; positive on the face's side. The edge is always
+ * taken from its lower vertex, so the two facets of an edge get values of exactly opposite sign, and 0 at the edge's own ends. */
+static double beside_edge(const rg_face *face, int e, const double x[3])
+{
+    const int next = (e + 1) % 3;
+    const bool rising = face->vertex[e] < face->vertex[next];
+    const double *p = face->at_m[rising ? e : next], *q = face->at_m[rising ? next : e];
+    const double area2 = (q[0] - p[0]) * (x[1] - p[1]) - (q[1] - p[1]) * (x[0] - p[0]);
+    return rising ? area2 : -area2;
+}
+
+/* Some edge of face has all of other on its far side. */
+static bool apart(const rg_face *face, const rg_face *other)
+{
+    for (int e = 0; e < 3; e++) {
+        int beyond = 0;
+        for (int i = 0; i < 3; i++) beyond += beside_edge(face, e, other->at_m[i]) <= 0.0;
+        if (beyond == 3) return true;
+    }
+    return false;
+}
+
+/* Heights of other's corners over face's plane (m, positive toward the radar); exactly 0 at shared vertices. */
+static void heights(const rg_face *face, const rg_face *other, double height_m[3])
+{
+    const double *n = face->normal_m2, length = sqrt(n[0] * n[0] + n[1] * n[1] + n[2] * n[2]);
+    for (int i = 0; i < 3; i++) {
+        const double *x = other->at_m[i];
+        int nearest = 0;
+        for (int j = 0; j < 3; j++)
+            if (other->vertex[i] == face->vertex[j]) nearest = j;
+        const double *o = face->at_m[nearest];
+        height_m[i] = (n[0] * (x[0] - o[0]) + n[1] * (x[1] - o[1]) + n[2] * (x[2] - o[2])) / length;
+    }
+}
+
+static double lowest(const double x[3]) { return fmin(x[0], fmin(x[1], x[2])); }
+static double highest(const double x[3]) { return fmax(x[0], fmax(x[1], x[2])); }
+
+bool rg_occluder_region(rg_region *region, const rg_face *face, const rg_face *other, double same_m)
+{
+    if (apart(face, other) || apart(other, face)) return false;
+
+    double over_face[3], over_other[3];
+    heights(face, other, over_face);
+    heights(other, face, over_other);
+    const bool same_plane = (highest(over_face) <= same_m && lowest(over_face) >= -same_m) ||
+                            (highest(over_other) <= same_m && lowest(over_other) >= -same_m);
+    if (same_plane && other->index > face->index) return false;
+    if (!same_plane && (highest(over_face) <= 0.0 || lowest(over_other) >= 0.0)) return false;
+
+    region->n = 3;
+    for (int e = 0; e < 3; e++)
+        for (int i = 0; i < 3; i++) region->edge[e].at_corner[i] = beside_edge(other, e, face->at_m[i]);
+    if (!same_plane && highest(over_other) > 0.0) {         /* the planes cross on the face: only what lies behind is hidden */
+        region->n = 4;
+        for (int i = 0; i < 3; i++) region->edge[3].at_corner[i] = -over_other[i];
+    }
+    return true;
+}
