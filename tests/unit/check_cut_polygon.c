@@ -33,11 +33,12 @@ static bool in_region(const rg_region *region, double a, double b)
     return true;
 }
 
+/* Two corners may be one but for a rounding, and such an edge has no side: hence the bound, of 2^-52 times a facet of size 1. */
 static bool in_polygon(const rg_polygon *p, double a, double b)
 {
     for (int i = 0; i < p->n; i++) {
         const int next = (i + 1) % p->n;
-        if ((p->a[next] - p->a[i]) * (b - p->b[i]) - (p->b[next] - p->b[i]) * (a - p->a[i]) < 0.0) return false;
+        if ((p->a[next] - p->a[i]) * (b - p->b[i]) - (p->b[next] - p->b[i]) * (a - p->a[i]) < -0x1p-52) return false;
     }
     return true;
 }
