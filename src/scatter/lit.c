@@ -94,8 +94,9 @@ static bool add_piece(rg_lit_scratch *scratch, const double a[3], const double b
 {
     rg_pieces *pieces = &scratch->pieces;
     const rg_face *face = &scratch->face;
-    if (pieces->n == pieces->room && !make_piece_room(pieces, pieces->n + 1)) return false;
     const double share = (a[1] - a[0]) * (b[2] - b[0]) - (b[1] - b[0]) * (a[2] - a[0]);
+    if (share <= 0.0) return true;                          /* three corners on one line, but for rounding */
+    if (pieces->n == pieces->room && !make_piece_room(pieces, pieces->n + 1)) return false;
     for (int i = 0; i < 3; i++)
         pieces->path_m[i][pieces->n] = 2.0 * (face->at_m[0][2] * (1.0 - a[i] - b[i]) + face->at_m[1][2] * a[i] + face->at_m[2][2] * b[i]);
     pieces->weight_m2[pieces->n++] = face->normal_m2[2] * share;
