@@ -35,6 +35,12 @@ void rg_cis_pi(double x, double *cos_pi_x, double *sin_pi_x);
 /* log10(x) for finite x > 0, relative error under 2^-51 (absolute near 1). */
 double rg_log10(double x);
 
+/* e^x for |x| <= 700, relative error under 2^-50; natural logarithm of finite x > 0, as rg_log10; angle of (x, y) in -pi .. pi, 0 for
+ * (0, 0), error under 2^-50. */
+double rg_exp(double x);
+double rg_log(double x);
+double rg_atan2(double y, double x);
+
 /* rg_cis_pi for eight values, same bits. */
 RG_INLINE void wide_cis_pi(f64x8 x, f64x8 *cos_pi_x, f64x8 *sin_pi_x)
 {

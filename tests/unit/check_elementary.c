@@ -65,6 +65,23 @@ START_TEST(log10_is_the_long_double_one)
 }
 END_TEST
 
+START_TEST(exp_log_and_atan2_are_the_long_double_ones)
+{
+    for (size_t i = 0; i < 200000; i++) {
+        const double x = (drand48() - 0.5) * (i % 2 ? 1400.0 : 2.0), y = (drand48() - 0.5) * 2.0, z = (drand48() - 0.5) * (i % 3 ? 2.0 : 1e-3);
+        ck_assert_msg(fabsl(rg_exp(x) / expl(x) - 1.0L) <= 0x1p-50L, "exp(%.17g) = %.17g", x, rg_exp(x));
+        ck_assert_msg(fabsl(rg_atan2(y, z) - atan2l(y, z)) <= 0x1p-50L, "atan2(%.17g, %.17g) = %.17g", y, z, rg_atan2(y, z));
+        const double big = (double)expl(x);
+        ck_assert_msg(fabsl(rg_log(big) - logl(big)) <= 0x1p-51L * fmaxl(fabsl(logl(big)), 1.0L), "log(%.17g) = %.17g", big, rg_log(big));
+    }
+    ck_assert_double_eq(rg_exp(0.0), 1.0);
+    ck_assert_double_eq(rg_atan2(0.0, 0.0), 0.0);
+    ck_assert_double_eq(rg_atan2(1.0, 0.0), 0.5 * RG_SIN_PI_0);
+    ck_assert_double_eq(rg_atan2(0.0, -1.0), RG_SIN_PI_0);
+    ck_assert_double_eq(rg_atan2(-1.0, 1.0), -0.25 * RG_SIN_PI_0);
+}
+END_TEST
+
 int main(void)
 {
     Suite *suite = suite_create("elementary");
@@ -73,6 +90,7 @@ int main(void)
     tcase_add_test(tests, quarter_turns_are_exact);
     tcase_add_test(tests, eight_lanes_give_the_bits_of_one);
     tcase_add_test(tests, log10_is_the_long_double_one);
+    tcase_add_test(tests, exp_log_and_atan2_are_the_long_double_ones);
     suite_add_tcase(suite, tests);
     return run_suite(suite);
 }
