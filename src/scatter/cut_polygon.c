@@ -18,20 +18,17 @@ double rg_polygon_area2(const rg_polygon *p)
     return sum;
 }
 
-static bool add_corner(rg_polygon *p, double a, double b)
+static void add_corner(rg_polygon *p, double a, double b)
 {
-    if (p->n == RG_POLYGON_ROOM) return false;
     p->a[p->n] = a;
     p->b[p->n] = b;
     p->n++;
-    return true;
 }
 
-/* Both sides of a cut; a side without area comes out with n = 0. */
-static bool split(const rg_polygon *p, const rg_half_plane *plane, rg_polygon *inside, rg_polygon *outside)
+bool rg_polygon_split(const rg_polygon *p, const rg_half_plane *plane, rg_polygon *inside, rg_polygon *outside)
 {
     double f[RG_POLYGON_ROOM];
-    bool any_in = false, any_out = false, fits = true;
+    bool any_in = false, any_out = false;
     for (int i = 0; i < p->n; i++) {
         f[i] = rg_half_plane_at(plane, p->a[i], p->b[i]);
         any_in |= f[i] > 0.0;
@@ -44,18 +41,18 @@ static bool split(const rg_polygon *p, const rg_half_plane *plane, rg_polygon *i
     }
     for (int i = 0; i < p->n; i++) {
         const int next = i + 1 < p->n ? i + 1 : 0;
-        if (f[i] >= 0.0) fits &= add_corner(inside, p->a[i], p->b[i]);
-        if (f[i] <= 0.0) fits &= add_corner(outside, p->a[i], p->b[i]);
+        if (f[i] >= 0.0) add_corner(inside, p->a[i], p->b[i]);
+        if (f[i] <= 0.0) add_corner(outside, p->a[i], p->b[i]);
         if ((f[i] > 0.0 && f[next] < 0.0) || (f[i] < 0.0 && f[next] > 0.0)) {
             const double t = f[i] / (f[i] - f[next]);
             const double a = p->a[i] + t * (p->a[next] - p->a[i]), b = p->b[i] + t * (p->b[next] - p->b[i]);
-            fits &= add_corner(inside, a, b);
-            fits &= add_corner(outside, a, b);
+            add_corner(inside, a, b);
+            add_corner(outside, a, b);
         }
     }
     if (rg_polygon_area2(inside) < SLIVER) inside->n = 0;
     if (rg_polygon_area2(outside) < SLIVER) outside->n = 0;
-    return fits;
+    return inside->n <= RG_POLYGON_CORNERS && outside->n <= RG_POLYGON_CORNERS;
 }
 
 bool rg_polygon_minus(const rg_polygon *polygon, const rg_region *region, size_t room, rg_polygon out[], size_t *n)
@@ -64,7 +61,7 @@ bool rg_polygon_minus(const rg_polygon *polygon, const rg_region *region, size_t
     *n = 0;
     for (int e = 0; e < region->n; e++) {
         rg_polygon inside, outside;
-        if (!split(&rest, &region->edge[e], &inside, &outside)) return false;
+        if (!rg_polygon_split(&rest, &region->edge[e], &inside, &outside)) return false;
         if (inside.n == 0) {                                /* no overlap: the cuts so far were for nothing */
             if (room == 0) return false;
             out[0] = *polygon;

@@ -8,7 +8,8 @@
 #include <stdbool.h>
 #include <stddef.h>
 
-enum { RG_POLYGON_ROOM = 12, RG_OCCLUDER_EDGES = 4 };
+/* A polygon to be cut has up to RG_POLYGON_CORNERS corners; there is room for those that one cut more adds. */
+enum { RG_POLYGON_CORNERS = 12, RG_POLYGON_ROOM = RG_POLYGON_CORNERS + 2, RG_REGION_EDGES = 5 };
 
 typedef struct { int n; double a[RG_POLYGON_ROOM], b[RG_POLYGON_ROOM]; } rg_polygon;
 
@@ -16,15 +17,18 @@ typedef struct { int n; double a[RG_POLYGON_ROOM], b[RG_POLYGON_ROOM]; } rg_poly
 typedef struct { double at_corner[3]; } rg_half_plane;
 
 /* A convex region: what one occluder hides of the facet. */
-typedef struct { int n; rg_half_plane edge[RG_OCCLUDER_EDGES]; } rg_region;
+typedef struct { int n; rg_half_plane edge[RG_REGION_EDGES]; } rg_region;
 
 double rg_half_plane_at(const rg_half_plane *plane, double a, double b);
 
 /* Twice the area as a share of twice the facet's; positive for counter-clockwise. */
 double rg_polygon_area2(const rg_polygon *polygon);
 
+/* The two sides of a cut; a side without area comes out with n = 0. False when one has more than RG_POLYGON_CORNERS corners. */
+bool rg_polygon_split(const rg_polygon *polygon, const rg_half_plane *plane, rg_polygon *inside, rg_polygon *outside);
+
 /* Writes polygon without region as convex polygons to out[0 .. *n - 1]; exactly polygon itself where they do not overlap. Returns false,
- * with *n of no meaning, when room polygons do not suffice or one would have more than RG_POLYGON_ROOM corners. */
+ * with *n of no meaning, when room polygons do not suffice or one would have more than RG_POLYGON_CORNERS corners. */
 bool rg_polygon_minus(const rg_polygon *polygon, const rg_region *region, size_t room, rg_polygon out[], size_t *n);
 
 #endif

@@ -1,71 +1,46 @@
 /* lit.c - which portions of which facets does the radar see? */
 #include "scatter/lit.h"
 #include "base/sum.h"
-#include "scatter/occluder.h"
 #include <math.h>
 #include <stdlib.h>
 
-/* Up to this many occluders are cut out exactly; more, and the piece is halved first. */
-enum { EXACT_OCCLUDERS = 24, POLYGONS = 160 };
+/* Up to this many occluders are cut out at once; more, and the part is halved first. */
+enum { OCCLUDERS_AT_ONCE = 24, POLYGONS_AT_ONCE = 160 };
 
-/* A triangle of the facet's, barycentric. */
-typedef struct { double a[3], b[3]; } part_of_facet;
+const rg_polygon rg_whole_facet = {.n = 3, .a = {0.0, 1.0, 0.0}, .b = {0.0, 0.0, 1.0}};
 
 struct rg_lit_scratch {
-    rg_pieces pieces;
-    uint32_t *near;                 /* what the prism query named */
+    uint32_t *near;                 /* what the prism query named, then what of it hides something */
     size_t near_room;
-    rg_region *region;              /* what the occluders of the facet in hand hide */
-    size_t n_regions, region_room;
-    uint32_t *list;                 /* indices of regions, one stretch a level of the halving */
+    rg_region *region;              /* what those hide of the face */
+    size_t region_room;
+    uint32_t *list;                 /* indices of regions, one stretch for each level of the halving */
     size_t list_room;
-    rg_polygon polygon[2][POLYGONS];
-    /* the facet in hand */
-    rg_face face;
-    double grain_m;
+    rg_polygon cut[2][POLYGONS_AT_ONCE];
+    rg_polygons lit;                /* of the facet in hand, in rg_lit_block */
 };
 
-rg_status rg_seen_new(rg_seen *seen, const rg_mesh *mesh, rg_error *err)
-{
-    seen->n_vertices = mesh->n_vertices;
-    seen->at_m = malloc(mesh->n_vertices * sizeof *seen->at_m);
-    return seen->at_m ? RG_OK : rg_fail(err, RG_NO_MEMORY, "no memory for %zu vertices as seen", mesh->n_vertices);
-}
-
-void rg_seen_turn(rg_seen *seen, const rg_mesh *mesh, const rg_view *view)
-{
-    double reach_m = 0.0;
-    seen->view = *view;
-    for (size_t i = 0; i < mesh->n_vertices; i++) {
-        const vec3 r = vec3_from(mesh->vertex_m[i]);
-        seen->at_m[i][0] = vec3_dot(view->h, r);
-        seen->at_m[i][1] = vec3_dot(view->v, r);
-        seen->at_m[i][2] = vec3_dot(view->s, r);
-        reach_m = fmax(reach_m, fmax(fabs(r.x), fmax(fabs(r.y), fabs(r.z))));
-    }
-    seen->reach_m = reach_m;
-}
-
-void rg_seen_free(rg_seen *seen)
-{
-    free(seen->at_m);
-    *seen = (rg_seen){0};
-}
+/* What add_lit hands down unchanged. */
+typedef struct {
+    const rg_face *face;
+    double grain_m;
+    rg_lit_scratch *scratch;
+    rg_polygons *lit;
+} lit_job;
 
 rg_lit_scratch *rg_lit_scratch_new(void) { return calloc(1, sizeof(rg_lit_scratch)); }
 
 void rg_lit_scratch_free(rg_lit_scratch *scratch)
 {
     if (!scratch) return;
-    for (int i = 0; i < 3; i++) free(scratch->pieces.path_m[i]);
-    free(scratch->pieces.weight_m2);
     free(scratch->near);
     free(scratch->region);
     free(scratch->list);
+    free(scratch->lit.polygon);
     free(scratch);
 }
 
-/* Makes room for n elements at least; doubles, so that growing is rare. False without memory, and then nothing has changed. */
+/* Room for n elements at least; doubles, so that growing is rare. False without memory, and then nothing has changed. */
 static bool make_room(void **array, size_t *room, size_t n, size_t element)
 {
     if (n <= *room) return true;
@@ -77,84 +52,52 @@ static bool make_room(void **array, size_t *room, size_t n, size_t element)
     return true;
 }
 
-static bool make_piece_room(rg_pieces *pieces, size_t n)
+static bool add_polygon(rg_polygons *list, const rg_polygon *polygon)
 {
-    bool fits = true;
-    size_t room = pieces->room;
-    for (int i = 0; i < 3; i++) {
-        size_t this_room = pieces->room;
-        fits = fits && make_room((void **)&pieces->path_m[i], &this_room, n, sizeof(double));
-    }
-    fits = fits && make_room((void **)&pieces->weight_m2, &room, n, sizeof(double));
-    if (fits) pieces->room = room;
-    return fits;
-}
-
-static bool add_piece(rg_lit_scratch *scratch, const double a[3], const double b[3])
-{
-    rg_pieces *pieces = &scratch->pieces;
-    const rg_face *face = &scratch->face;
-    const double share = (a[1] - a[0]) * (b[2] - b[0]) - (b[1] - b[0]) * (a[2] - a[0]);
-    if (share <= 0.0) return true;                          /* three corners on one line, but for rounding */
-    if (pieces->n == pieces->room && !make_piece_room(pieces, pieces->n + 1)) return false;
-    for (int i = 0; i < 3; i++)
-        pieces->path_m[i][pieces->n] = 2.0 * (face->at_m[0][2] * (1.0 - a[i] - b[i]) + face->at_m[1][2] * a[i] + face->at_m[2][2] * b[i]);
-    pieces->weight_m2[pieces->n++] = face->normal_m2[2] * share;
+    if (!make_room((void **)&list->polygon, &list->room, list->n + 1, sizeof *list->polygon)) return false;
+    list->polygon[list->n++] = *polygon;
     return true;
-}
-
-static bool add_polygon(rg_lit_scratch *scratch, const rg_polygon *p)
-{
-    bool fits = true;
-    for (int i = 1; i + 1 < p->n; i++) {
-        const double a[3] = {p->a[0], p->a[i], p->a[i + 1]}, b[3] = {p->b[0], p->b[i], p->b[i + 1]};
-        fits = fits && add_piece(scratch, a, b);
-    }
-    return fits;
 }
 
 typedef enum { MISSES, REACHES, COVERS } reach_of_region;
 
-static reach_of_region reach(const rg_region *region, const part_of_facet *part)
+static reach_of_region reach(const rg_region *region, const rg_polygon *part)
 {
-    int inside_all = 0;
+    int n_covering = 0;
     for (int e = 0; e < region->n; e++) {
         int in = 0, out = 0;
-        for (int i = 0; i < 3; i++) {
+        for (int i = 0; i < part->n; i++) {
             const double f = rg_half_plane_at(&region->edge[e], part->a[i], part->b[i]);
             in += f >= 0.0;
             out += f <= 0.0;
         }
-        if (out == 3) return MISSES;
-        inside_all += in == 3;
+        if (out == part->n) return MISSES;
+        n_covering += in == part->n;
     }
-    return inside_all == region->n ? COVERS : REACHES;
+    return n_covering == region->n ? COVERS : REACHES;
 }
 
-static bool hides_middle(const rg_region *region, const part_of_facet *part)
+static bool hides_middle(const rg_region *region, const rg_polygon *part)
 {
-    const double a = (part->a[0] + part->a[1] + part->a[2]) / 3.0, b = (part->b[0] + part->b[1] + part->b[2]) / 3.0;
+    double a = 0.0, b = 0.0;
+    for (int i = 0; i < part->n; i++) { a += part->a[i]; b += part->b[i]; }
     for (int e = 0; e < region->n; e++)
-        if (rg_half_plane_at(&region->edge[e], a, b) < 0.0) return false;
+        if (rg_half_plane_at(&region->edge[e], a / part->n, b / part->n) < 0.0) return false;
     return true;
 }
 
-/* The lit polygons of a part, all shadows cut out; false when they do not fit, and then nothing has been added. *enough is false
- * without memory. */
-static bool cut_out(rg_lit_scratch *scratch, const part_of_facet *part, const uint32_t list[], size_t n_list, bool *enough)
+/* Appends the lit polygons of a part, all shadows cut out; false when they do not fit, and then nothing has been appended. *enough is
+ * false without memory. */
+static bool cut_out(const lit_job *job, const rg_polygon *part, const uint32_t list[], size_t n_list, bool *enough)
 {
-    rg_polygon *from = scratch->polygon[0], *to = scratch->polygon[1];
+    rg_polygon *from = job->scratch->cut[0], *to = job->scratch->cut[1];
     size_t n = 1;
-    from[0].n = 3;
-    for (int i = 0; i < 3; i++) {
-        from[0].a[i] = part->a[i];
-        from[0].b[i] = part->b[i];
-    }
+    from[0] = *part;
     for (size_t o = 0; o < n_list && n > 0; o++) {
         size_t n_to = 0;
         for (size_t i = 0; i < n; i++) {
             size_t added;
-            if (!rg_polygon_minus(&from[i], &scratch->region[list[o]], POLYGONS - n_to, to + n_to, &added)) return false;
+            if (!rg_polygon_minus(&from[i], &job->scratch->region[list[o]], POLYGONS_AT_ONCE - n_to, to + n_to, &added)) return false;
             n_to += added;
         }
         rg_polygon *swap = from;
@@ -162,47 +105,64 @@ static bool cut_out(rg_lit_scratch *scratch, const part_of_facet *part, const ui
         to = swap;
         n = n_to;
     }
-    for (size_t i = 0; i < n && *enough; i++) *enough = add_polygon(scratch, &from[i]);
+    for (size_t i = 0; i < n && *enough; i++) *enough = add_polygon(job->lit, &from[i]);
     return true;
 }
 
-/* Squared length of the side opposite to corner i. */
-static double side2_m2(const rg_face *face, const part_of_facet *part, int i)
+static void corner_m(const rg_face *face, const rg_polygon *part, int i, double at_m[3])
 {
-    const int j = (i + 1) % 3, k = (i + 2) % 3;
-    const double a = part->a[k] - part->a[j], b = part->b[k] - part->b[j];
-    double sum = 0.0;
-    for (int axis = 0; axis < 3; axis++) {
-        const double d = a * (face->at_m[1][axis] - face->at_m[0][axis]) + b * (face->at_m[2][axis] - face->at_m[0][axis]);
-        sum += d * d;
-    }
-    return sum;
+    for (int axis = 0; axis < 3; axis++)
+        at_m[axis] = face->at_m[0][axis] * (1.0 - part->a[i] - part->b[i]) + face->at_m[1][axis] * part->a[i] + face->at_m[2][axis] * part->b[i];
 }
 
-/* Adds what is lit of a part of the facet; the regions that may reach it are list[first .. first + n - 1]. False without memory. */
-static bool add_lit(rg_lit_scratch *scratch, const part_of_facet *part, size_t first, size_t n)
+/* The two corners that are farthest apart; returns their distance squared. */
+static double longest_m2(const rg_face *face, const rg_polygon *part, double p[3], double q[3])
 {
-    bool enough = true;
-    if (n == 0) return add_piece(scratch, part->a, part->b);
-    if (n <= EXACT_OCCLUDERS && cut_out(scratch, part, scratch->list + first, n, &enough)) return enough;
+    double longest = -1.0;
+    for (int i = 0; i < part->n; i++)
+        for (int k = 0; k < i; k++) {
+            double x[3], y[3], sum = 0.0;
+            corner_m(face, part, i, x);
+            corner_m(face, part, k, y);
+            for (int axis = 0; axis < 3; axis++) sum += (x[axis] - y[axis]) * (x[axis] - y[axis]);
+            if (sum <= longest) continue;
+            longest = sum;
+            for (int axis = 0; axis < 3; axis++) { p[axis] = x[axis]; q[axis] = y[axis]; }
+        }
+    return longest;
+}
 
-    int longest = 0;
-    double length2_m2 = 0.0;
+/* The plane half-way between two points, as a half-plane on the face. */
+static rg_half_plane half_way(const rg_face *face, const double p[3], const double q[3])
+{
+    rg_half_plane plane;
     for (int i = 0; i < 3; i++) {
-        const double side2 = side2_m2(&scratch->face, part, i);
-        if (side2 > length2_m2) { length2_m2 = side2; longest = i; }
+        plane.at_corner[i] = 0.0;
+        for (int axis = 0; axis < 3; axis++)
+            plane.at_corner[i] += (face->at_m[i][axis] - 0.5 * (p[axis] + q[axis])) * (p[axis] - q[axis]);
     }
-    if (length2_m2 <= scratch->grain_m * scratch->grain_m) {
+    return plane;
+}
+
+/* Appends what is lit of a part; the regions that may reach it are list[first .. first + n - 1]. False without memory. */
+static bool add_lit(const lit_job *job, const rg_polygon *part, size_t first, size_t n)
+{
+    rg_lit_scratch *scratch = job->scratch;
+    bool enough = true;
+    double p[3], q[3];
+    if (n == 0) return add_polygon(job->lit, part);
+    if (n <= OCCLUDERS_AT_ONCE && cut_out(job, part, scratch->list + first, n, &enough)) return enough;
+    if (longest_m2(job->face, part, p, q) <= job->grain_m * job->grain_m) {
         for (size_t i = 0; i < n; i++)
             if (hides_middle(&scratch->region[scratch->list[first + i]], part)) return true;
-        return add_piece(scratch, part->a, part->b);
+        return add_polygon(job->lit, part);
     }
 
-    const int j = (longest + 1) % 3, k = (longest + 2) % 3;
-    const double a = 0.5 * (part->a[j] + part->a[k]), b = 0.5 * (part->b[j] + part->b[k]);
-    const part_of_facet half[2] = {{{part->a[longest], part->a[j], a}, {part->b[longest], part->b[j], b}},
-                                   {{part->a[longest], a, part->a[k]}, {part->b[longest], b, part->b[k]}}};
+    const rg_half_plane middle = half_way(job->face, p, q);
+    rg_polygon half[2];
+    rg_polygon_split(part, &middle, &half[0], &half[1]);    /* may have a corner too many to be cut, and then is halved again */
     for (int side = 0; side < 2 && enough; side++) {
+        if (half[side].n == 0) continue;
         size_t kept = 0;
         bool covered = false;
         if (!make_room((void **)&scratch->list, &scratch->list_room, first + 2 * n, sizeof *scratch->list)) return false;
@@ -212,7 +172,7 @@ static bool add_lit(rg_lit_scratch *scratch, const part_of_facet *part, size_t f
             covered = found == COVERS;
             if (found == REACHES) scratch->list[first + n + kept++] = region;
         }
-        if (!covered) enough = add_lit(scratch, &half[side], first + n, kept);
+        if (!covered) enough = add_lit(job, &half[side], first + n, kept);
     }
     return enough;
 }
@@ -223,73 +183,109 @@ static int by_index(const void *a, const void *b)
     return (x > y) - (x < y);
 }
 
-typedef enum { SHADOW_NONE, SHADOW_PART, SHADOW_ALL, SHADOW_NO_MEMORY } shadow;
-
-/* Gathers the regions that are hidden of the facet in hand, in the order of the occluders' indices. */
-static shadow gather_regions(const rg_scene *scene, const rg_seen *seen, rg_lit_scratch *scratch)
+/* Names the facets in the shadow prism of a face. */
+static bool query_prism(const rg_scene *scene, const rg_seen *seen, const rg_face *face, rg_lit_scratch *scratch, size_t *n)
 {
-    static const part_of_facet whole = {{0.0, 1.0, 0.0}, {0.0, 0.0, 1.0}};
-    const rg_mesh *mesh = scene->mesh;
-    const rg_face *face = &scratch->face;
     rg_prism prism = {.toward = {seen->view.s.x, seen->view.s.y, seen->view.s.z}};
     for (int i = 0; i < 3; i++)
-        for (int axis = 0; axis < 3; axis++) prism.corner_m[i][axis] = mesh->vertex_m[face->vertex[i]][axis];
-    size_t n = rg_bvh_in_prism(scene->bvh, &prism, scratch->near_room, scratch->near);
-    if (n > scratch->near_room) {
-        if (!make_room((void **)&scratch->near, &scratch->near_room, n, sizeof *scratch->near)) return SHADOW_NO_MEMORY;
-        n = rg_bvh_in_prism(scene->bvh, &prism, scratch->near_room, scratch->near);
+        for (int axis = 0; axis < 3; axis++) prism.corner_m[i][axis] = scene->mesh->vertex_m[face->vertex[i]][axis];
+    *n = rg_bvh_in_prism(scene->bvh, &prism, scratch->near_room, scratch->near);
+    if (*n > scratch->near_room) {
+        if (!make_room((void **)&scratch->near, &scratch->near_room, *n, sizeof *scratch->near)) return false;
+        *n = rg_bvh_in_prism(scene->bvh, &prism, scratch->near_room, scratch->near);
     }
+    return true;
+}
 
-    size_t kept = 0;                                        /* only what truly hides something is worth sorting */
-    for (size_t i = 0; i < n; i++) {
-        rg_face other;
-        rg_region region;
-        if (scratch->near[i] == face->index || !rg_face_seen(&other, mesh, seen, scratch->near[i])) continue;
-        if (!rg_occluder_region(&region, face, &other, mesh->report.weld_m)) continue;
-        if (reach(&region, &whole) == COVERS) return SHADOW_ALL;
-        scratch->near[kept++] = scratch->near[i];
+bool rg_lit_part(const rg_scene *scene, const rg_seen *seen, const rg_face *face, const rg_polygon *part, const rg_horizon *horizon,
+                 double grain_m, rg_lit_scratch *scratch, rg_polygons *lit)
+{
+    const double same_m = scene->mesh->report.weld_m;
+    size_t n, n_hiding = 0;
+    rg_face other;
+    rg_region region;
+    if (!query_prism(scene, seen, face, scratch, &n)) return false;
+    for (size_t i = 0; i < n; i++) {                        /* most are only neighbours, and not worth sorting */
+        const uint32_t near = scratch->near[i];
+        if (near == face->index || !rg_face_seen(&other, scene->mesh, seen, near) ||
+            !rg_occluder_region(&region, face, &other, same_m, horizon))
+            continue;
+        const reach_of_region found = reach(&region, part);
+        if (found == COVERS) return true;
+        if (found == REACHES) scratch->near[n_hiding++] = near;
     }
-    if (kept == 0) return SHADOW_NONE;
-    if (!make_room((void **)&scratch->region, &scratch->region_room, kept, sizeof *scratch->region) ||
-        !make_room((void **)&scratch->list, &scratch->list_room, kept, sizeof *scratch->list))
-        return SHADOW_NO_MEMORY;
-    qsort(scratch->near, kept, sizeof *scratch->near, by_index);
-    for (size_t i = 0; i < kept; i++) {
-        rg_face other;
-        rg_face_seen(&other, mesh, seen, scratch->near[i]);
-        rg_occluder_region(&scratch->region[i], face, &other, mesh->report.weld_m);
+    if (n_hiding == 0) return add_polygon(lit, part);
+    if (!make_room((void **)&scratch->region, &scratch->region_room, n_hiding, sizeof *scratch->region) ||
+        !make_room((void **)&scratch->list, &scratch->list_room, n_hiding, sizeof *scratch->list))
+        return false;
+    qsort(scratch->near, n_hiding, sizeof *scratch->near, by_index);    /* the tree's order must not show in the result */
+    for (size_t i = 0; i < n_hiding; i++) {
+        rg_face_seen(&other, scene->mesh, seen, scratch->near[i]);
+        rg_occluder_region(&scratch->region[i], face, &other, same_m, horizon);
         scratch->list[i] = (uint32_t)i;
     }
-    scratch->n_regions = kept;
-    return SHADOW_PART;
+    const lit_job job = {.face = face, .grain_m = grain_m, .scratch = scratch, .lit = lit};
+    return add_lit(&job, part, 0, n_hiding);
 }
 
-static bool add_facet(const rg_scene *scene, const rg_seen *seen, rg_lit_scratch *scratch)
+static bool make_piece_room(rg_pieces *pieces, size_t n)
 {
-    const part_of_facet whole = {{0.0, 1.0, 0.0}, {0.0, 0.0, 1.0}};
-    switch (gather_regions(scene, seen, scratch)) {
-    case SHADOW_NONE: return add_piece(scratch, whole.a, whole.b);
-    case SHADOW_PART: return add_lit(scratch, &whole, 0, scratch->n_regions);
-    case SHADOW_ALL: return true;
-    default: return false;
+    bool fits = true;
+    size_t room = pieces->room;
+    for (int i = 0; i < 3; i++) {
+        size_t path_room = pieces->room;
+        fits = fits && make_room((void **)&pieces->path_m[i], &path_room, n, sizeof(double));
     }
+    fits = fits && make_room((void **)&pieces->weight_m2, &room, n, sizeof(double));
+    if (fits) pieces->room = room;
+    return fits;
 }
 
-rg_status rg_lit_block(const rg_scene *scene, const rg_seen *seen, const rg_block *block, double grain_m,
-                       rg_lit_scratch *scratch, const rg_pieces **pieces, rg_error *err)
+void rg_pieces_free(rg_pieces *pieces)
 {
-    rg_pieces *mine = &scratch->pieces;
+    for (int i = 0; i < 3; i++) free(pieces->path_m[i]);
+    free(pieces->weight_m2);
+    *pieces = (rg_pieces){0};
+}
+
+/* A polygon as a fan of triangles. */
+static bool add_pieces(rg_pieces *pieces, const rg_face *face, const rg_polygon *p)
+{
+    if (!make_piece_room(pieces, pieces->n + (size_t)p->n)) return false;
+    for (int i = 1; i + 1 < p->n; i++) {
+        const int corner[3] = {0, i, i + 1};
+        const double share = (p->a[i] - p->a[0]) * (p->b[i + 1] - p->b[0]) - (p->b[i] - p->b[0]) * (p->a[i + 1] - p->a[0]);
+        if (share <= 0.0) continue;                         /* three corners on one line, but for rounding */
+        for (int c = 0; c < 3; c++) {
+            const double a = p->a[corner[c]], b = p->b[corner[c]];
+            pieces->path_m[c][pieces->n] = 2.0 * (face->at_m[0][2] * (1.0 - a - b) + face->at_m[1][2] * a + face->at_m[2][2] * b);
+        }
+        pieces->weight_m2[pieces->n++] = face->normal_m2[2] * share;
+    }
+    return true;
+}
+
+static bool pad(rg_pieces *pieces)
+{
+    if (!make_piece_room(pieces, pieces->n + RG_LANES)) return false;
+    for (; pieces->n % RG_LANES; pieces->n++) {
+        for (int i = 0; i < 3; i++) pieces->path_m[i][pieces->n] = 0.0;
+        pieces->weight_m2[pieces->n] = 0.0;
+    }
+    return true;
+}
+
+rg_status rg_lit_block(const rg_scene *scene, const rg_seen *seen, const rg_block *block, double grain_m, rg_lit_scratch *scratch,
+                       rg_pieces *pieces, rg_error *err)
+{
     bool enough = true;
-    mine->n = 0;
-    scratch->grain_m = grain_m;
-    for (uint32_t i = 0; i < block->n && enough; i++)
-        if (rg_face_seen(&scratch->face, scene->mesh, seen, block->first + i)) enough = add_facet(scene, seen, scratch);
-    enough = enough && make_piece_room(mine, mine->n + RG_LANES);
-    if (!enough) return rg_fail(err, RG_NO_MEMORY, "no memory for the lit pieces of %u facets", block->n);
-    for (; mine->n % RG_LANES; mine->n++) {
-        for (int i = 0; i < 3; i++) mine->path_m[i][mine->n] = 0.0;
-        mine->weight_m2[mine->n] = 0.0;
+    pieces->n = 0;
+    for (uint32_t i = 0; i < block->n && enough; i++) {
+        rg_face face;
+        if (!rg_face_seen(&face, scene->mesh, seen, block->first + i)) continue;
+        scratch->lit.n = 0;
+        enough = rg_lit_part(scene, seen, &face, &rg_whole_facet, NULL, grain_m, scratch, &scratch->lit);
+        for (size_t k = 0; k < scratch->lit.n && enough; k++) enough = add_pieces(pieces, &face, &scratch->lit.polygon[k]);
     }
-    *pieces = mine;
-    return RG_OK;
+    return enough && pad(pieces) ? RG_OK : rg_fail(err, RG_NO_MEMORY, "no memory for the lit pieces of %u facets", block->n);
 }

@@ -1,45 +1,6 @@
 /* occluder.c - what one facet hides of another along the line of sight */
 #include "scatter/occluder.h"
-#include <float.h>
 #include <math.h>
-#include <string.h>
-
-static void cross(const double a[3], const double b[3], double out[3])
-{
-    out[0] = a[1] * b[2] - a[2] * b[1];
-    out[1] = a[2] * b[0] - a[0] * b[2];
-    out[2] = a[0] * b[1] - a[1] * b[0];
-}
-
-bool rg_face_seen(rg_face *face, const rg_mesh *mesh, const rg_seen *seen, uint32_t facet)
-{
-    double edge[2][3], edges_m = 0.0;
-    face->index = facet;
-    for (int i = 0; i < 3; i++) {
-        face->vertex[i] = mesh->facet[facet][i];
-        memcpy(face->at_m[i], seen->at_m[face->vertex[i]], sizeof face->at_m[i]);
-    }
-    for (int e = 0; e < 2; e++)
-        for (int i = 0; i < 3; i++) {
-            edge[e][i] = face->at_m[e + 1][i] - face->at_m[0][i];
-            edges_m += fabs(edge[e][i]);
-        }
-    cross(edge[0], edge[1], face->normal_m2);
-    /* The corners carry roundings of some reach * 2^-53, and so does the shown area, times the edges. */
-    if (fabs(face->normal_m2[2]) <= 4.0 * DBL_EPSILON * seen->reach_m * edges_m) return false;
-    if (face->normal_m2[2] > 0.0) return true;
-    if (mesh->shells[mesh->shell[facet]].closed) return false;
-    const uint32_t vertex = face->vertex[1];
-    face->vertex[1] = face->vertex[2];
-    face->vertex[2] = vertex;
-    for (int i = 0; i < 3; i++) {
-        const double at_m = face->at_m[1][i];
-        face->at_m[1][i] = face->at_m[2][i];
-        face->at_m[2][i] = at_m;
-        face->normal_m2[i] = -face->normal_m2[i];
-    }
-    return true;
-}
 
 /* Twice the signed area of edge e of face with x, in the plane across the line of sight; positive on the face's side. The edge is always
  * taken from its lower vertex, so the two facets of an edge get values of exactly opposite sign, and 0 at the edge's own ends. */
@@ -80,7 +41,31 @@ static void heights(const rg_face *face, const rg_face *other, double height_m[3
 static double lowest(const double x[3]) { return fmin(x[0], fmin(x[1], x[2])); }
 static double highest(const double x[3]) { return fmax(x[0], fmax(x[1], x[2])); }
 
-bool rg_occluder_region(rg_region *region, const rg_face *face, const rg_face *other, double same_m)
+/* Adds to region what the horizon leaves of other: along the line of sight over each corner of face, how far other lies within it. */
+static bool keep_within(const rg_horizon *horizon, rg_region *region, const rg_face *face, const rg_face *other, const double over_other[3])
+{
+    const double *n = horizon->normal, *m = other->normal_m2;
+    double within[3];
+    int n_within = 0;
+    if (other->index == horizon->facet) return false;
+    for (int i = 0; i < 3; i++) {
+        const double *x = other->at_m[i];
+        within[i] = n[0] * (x[0] - horizon->at_m[0]) + n[1] * (x[1] - horizon->at_m[1]) + n[2] * (x[2] - horizon->at_m[2]);
+        n_within += within[i] > 0.0;
+    }
+    if (n_within == 0) return false;
+    if (n_within == 3) return true;
+    const double slant = sqrt(m[0] * m[0] + m[1] * m[1] + m[2] * m[2]) / m[2];
+    for (int i = 0; i < 3; i++) {
+        const double *x = face->at_m[i];
+        region->edge[region->n].at_corner[i] = n[0] * (x[0] - horizon->at_m[0]) + n[1] * (x[1] - horizon->at_m[1]) +
+                                               n[2] * (x[2] - horizon->at_m[2] - over_other[i] * slant);
+    }
+    region->n++;
+    return true;
+}
+
+bool rg_occluder_region(rg_region *region, const rg_face *face, const rg_face *other, double same_m, const rg_horizon *horizon)
 {
     if (apart(face, other) || apart(other, face)) return false;
 
@@ -99,5 +84,5 @@ bool rg_occluder_region(rg_region *region, const rg_face *face, const rg_face *o
         region->n = 4;
         for (int i = 0; i < 3; i++) region->edge[3].at_corner[i] = -over_other[i];
     }
-    return true;
+    return !horizon || keep_within(horizon, region, face, other, over_other);
 }

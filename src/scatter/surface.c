@@ -21,6 +21,7 @@ struct rg_surface_bench {
     rg_seen seen;
     int n_threads;
     rg_lit_scratch **scratch;       /* [n_threads] */
+    rg_pieces *pieces;              /* [n_threads] */
     size_t sum_room;
     double (*group_m2)[2];          /* [GROUP][n_freq]: the integral over each block of the group */
     rg_sum (*part_m2)[2];           /* [n_freq]: over the part in hand */
@@ -35,7 +36,8 @@ rg_status rg_surface_bench_new(rg_surface_bench **out, const rg_scene *scene, in
     if (!bench) return rg_fail(err, RG_NO_MEMORY, "no memory to start a thread's work");
     bench->n_threads = n_threads;
     bench->scratch = calloc((size_t)n_threads, sizeof(rg_lit_scratch *));
-    rg_status status = bench->scratch ? rg_seen_new(&bench->seen, scene->mesh, err) : RG_NO_MEMORY;
+    bench->pieces = calloc((size_t)n_threads, sizeof *bench->pieces);
+    rg_status status = bench->scratch && bench->pieces ? rg_seen_new(&bench->seen, scene->mesh, err) : RG_NO_MEMORY;
     for (int t = 0; t < n_threads && !status; t++)
         if (!(bench->scratch[t] = rg_lit_scratch_new())) status = RG_NO_MEMORY;
     if (status) {
@@ -50,7 +52,9 @@ void rg_surface_bench_free(rg_surface_bench *bench)
 {
     if (!bench) return;
     for (int t = 0; t < bench->n_threads && bench->scratch; t++) rg_lit_scratch_free(bench->scratch[t]);
+    for (int t = 0; t < bench->n_threads && bench->pieces; t++) rg_pieces_free(&bench->pieces[t]);
     free(bench->scratch);
+    free(bench->pieces);
     rg_seen_free(&bench->seen);
     free(bench->group_m2);
     free(bench->part_m2);
@@ -74,10 +78,9 @@ static rg_status make_sum_room(rg_surface_bench *bench, size_t n_freq, rg_error 
 
 /* The integral Sum (n.s) Int exp(2jk s.r) dA over one block, for every frequency; r from the mesh's middle. */
 static rg_status sum_block(const rg_scene *scene, const rg_seen *seen, const rg_block *block, double grain_m, size_t n_freq,
-                           const double freq_hz[], rg_lit_scratch *scratch, double sum_m2[][2], rg_error *err)
+                           const double freq_hz[], rg_lit_scratch *scratch, rg_pieces *pieces, double sum_m2[][2], rg_error *err)
 {
-    const rg_pieces *pieces;
-    const rg_status status = rg_lit_block(scene, seen, block, grain_m, scratch, &pieces, err);
+    const rg_status status = rg_lit_block(scene, seen, block, grain_m, scratch, pieces, err);
     for (size_t f = 0; f < n_freq && !status; f++)
         scene->triangle_sum(pieces->n, pieces->path_m[0], pieces->path_m[1], pieces->path_m[2], pieces->weight_m2,
                             2.0 * freq_hz[f] / LIGHT_SPEED_M_PER_S, sum_m2[f]);
@@ -121,9 +124,10 @@ static rg_status sum_group(const rg_scene *scene, rg_surface_bench *bench, size_
     for (size_t b = 0; b < n; b++) {
         rg_error mine = {{0}};
         rg_status status = stop && *stop ? rg_fail(&mine, RG_STOPPED, "stopped") : RG_OK;
+        const int t = bench->n_threads > 1 ? omp_get_thread_num() : 0;
         if (!status)
-            status = sum_block(scene, &bench->seen, &scene->block[first + b], grain_m, n_freq, freq_hz,
-                               bench->scratch[bench->n_threads > 1 ? omp_get_thread_num() : 0], bench->group_m2 + b * n_freq, &mine);
+            status = sum_block(scene, &bench->seen, &scene->block[first + b], grain_m, n_freq, freq_hz, bench->scratch[t],
+                               &bench->pieces[t], bench->group_m2 + b * n_freq, &mine);
         if (status) {
 #pragma omp critical
             first_status = rg_fail(err, status, "%s", mine.text);
