@@ -27,8 +27,8 @@ typedef struct {
     /* What cutting polygons needs; its work is bounded over the file as a whole. */
     size_t cut_held;
     double (*flat)[2];
-    uint32_t *ring;                     /* [4 * cut_held] */
-    uint64_t cut_work;
+    uint32_t *ring;                     /* [6 * cut_held] */
+    uint64_t cut_work, cut_work_max;
 } rg_soup;
 
 void rg_soup_free(rg_soup *soup);   /* and empties it */
