@@ -12,33 +12,38 @@
 typedef struct { float enter_m; uint32_t child, n_facets; } step;
 
 /* Bits of the children that the ray meets up to limit_m, and where it enters them. */
-RG_INLINE uint32_t meet_boxes(const rg_node *node, const rg_box_ray *ray, float limit_m, f32x8 *enter_m)
+RG_INLINE uint32_t meet_boxes(const rg_node *node, const rg_box_ray *ray, float limit_m, float enter_m[RG_WIDTH])
 {
-    f32x8 first = f32x8_all(0.0f), last = f32x8_all(limit_m);
-    for (int axis = 0; axis < 3; axis++) {
-        const f32x8 *low = (const void *)node->low_m[axis], *high = (const void *)node->high_m[axis];
-        const f32x8 *near = ray->backward[axis] ? high : low, *far = ray->backward[axis] ? low : high;
-        first = f32x8_max((*near - ray->enter_m[axis]) * ray->inverse[axis], first);   /* 0 * inf drops out */
-        last = f32x8_min((*far - ray->leave_m[axis]) * ray->inverse[axis], last);
+    uint32_t met = 0;
+    for (int i = 0; i < RG_WIDTH; i += RG_FLOATS) {
+        floats first = floats_all(0.0f), last = floats_all(limit_m);
+        for (int axis = 0; axis < 3; axis++) {
+            const float *near = ray->backward[axis] ? node->high_m[axis] : node->low_m[axis];
+            const float *far = ray->backward[axis] ? node->low_m[axis] : node->high_m[axis];
+            first = floats_max((floats_at(near + i) - ray->enter_m[axis]) * ray->inverse[axis], first);     /* 0 * inf drops out */
+            last = floats_min((floats_at(far + i) - ray->leave_m[axis]) * ray->inverse[axis], last);
+        }
+        *(floats *)(enter_m + i) = first;
+        met |= floats_at_most(first, last * RG_LEAVE) << i;
     }
-    *enter_m = first;
-    return f32x8_at_most(first, last * RG_LEAVE) & ((1u << node->n) - 1u);
+    return met & ((1u << node->n) - 1u);
 }
 
 /* Bits of the facets on whose edges the ray keeps to one side: the first half of rg_meets. */
 RG_INLINE uint32_t meet_facets(const rg_leaf *leaf, const rg_ray_frame *f)
 {
-    f64x8 x[3], y[3];
-    for (int c = 0; c < 3; c++) {
-        const f64x8 *ax = (const void *)leaf->corner_m[c][f->kx], *ay = (const void *)leaf->corner_m[c][f->ky];
-        const f64x8 *az = (const void *)leaf->corner_m[c][f->kz];
-        const f64x8 z = *az - f->oz;
-        x[c] = (*ax - f->ox) - f->sx * z;
-        y[c] = (*ay - f->oy) - f->sy * z;
+    uint32_t missed = 0;
+    for (int i = 0; i < RG_WIDTH; i += RG_DOUBLES) {
+        doubles x[3], y[3];
+        for (int c = 0; c < 3; c++) {
+            const doubles z = doubles_at(leaf->corner_m[c][f->kz] + i) - f->oz;
+            x[c] = (doubles_at(leaf->corner_m[c][f->kx] + i) - f->ox) - f->sx * z;
+            y[c] = (doubles_at(leaf->corner_m[c][f->ky] + i) - f->oy) - f->sy * z;
+        }
+        const doubles u = x[2] * y[1] - y[2] * x[1], v = x[0] * y[2] - y[0] * x[2], w = x[1] * y[0] - y[1] * x[0], zero = {0};
+        missed |= (doubles_over(zero, doubles_min(u, doubles_min(v, w))) & doubles_over(doubles_max(u, doubles_max(v, w)), zero)) << i;
     }
-    const f64x8 u = x[2] * y[1] - y[2] * x[1], v = x[0] * y[2] - y[0] * x[2], w = x[1] * y[0] - y[1] * x[0];
-    const i64x8 below = (u < 0.0) | (v < 0.0) | (w < 0.0), above = (u > 0.0) | (v > 0.0) | (w > 0.0);
-    return ~i64x8_bits(below & above) & ((1u << leaf->n) - 1u);
+    return ~missed & ((1u << leaf->n) - 1u);
 }
 
 RG_INLINE bool walk_any(const rg_bvh *bvh, const rg_ray *ray)
@@ -51,8 +56,8 @@ RG_INLINE bool walk_any(const rg_bvh *bvh, const rg_ray *ray)
     stack[top++] = 0;
     while (top > 0) {
         const rg_node *node = &bvh->node[stack[--top]];
-        f32x8 enter_m;
-        for (uint32_t met = meet_boxes(node, &box, limit_m, &enter_m); met; met &= met - 1) {
+        float enter_m[RG_WIDTH];
+        for (uint32_t met = meet_boxes(node, &box, limit_m, enter_m); met; met &= met - 1) {
             const uint32_t c = (uint32_t)__builtin_ctz(met);
             if (node->n_facets[c] == 0) {
                 stack[top++] = node->child[c];
@@ -68,12 +73,12 @@ RG_INLINE bool walk_any(const rg_bvh *bvh, const rg_ray *ray)
 }
 
 /* Adds the children that were met to the stack, the nearest on top. */
-RG_INLINE int push_met(step stack[], int top, const rg_node *node, uint32_t met, const f32x8 *enter_m)
+RG_INLINE int push_met(step stack[], int top, const rg_node *node, uint32_t met, const float enter_m[])
 {
     const int bottom = top;
     for (; met; met &= met - 1) {
         const uint32_t c = (uint32_t)__builtin_ctz(met);
-        const step s = {((const float *)enter_m)[c], node->child[c], node->n_facets[c]};
+        const step s = {enter_m[c], node->child[c], node->n_facets[c]};
         int at = top++;
         for (; at > bottom && stack[at - 1].enter_m < s.enter_m; at--) stack[at] = stack[at - 1];
         stack[at] = s;
@@ -95,9 +100,9 @@ RG_INLINE rg_hit walk_closest(const rg_bvh *bvh, const rg_ray *ray)
         if (now.enter_m > limit_m * RG_LEAVE) continue;
         if (now.n_facets == 0) {
             const rg_node *node = &bvh->node[now.child];
-            f32x8 enter_m;
-            const uint32_t met = meet_boxes(node, &box, limit_m, &enter_m);
-            top = push_met(stack, top, node, met, &enter_m);
+            float enter_m[RG_WIDTH];
+            const uint32_t met = meet_boxes(node, &box, limit_m, enter_m);
+            top = push_met(stack, top, node, met, enter_m);
             continue;
         }
         const rg_leaf *leaf = &bvh->leaf[now.child & ~RG_BLOCK_BIT];
@@ -115,42 +120,66 @@ RG_INLINE rg_hit walk_closest(const rg_bvh *bvh, const rg_ray *ray)
 RG_INLINE uint32_t boxes_in_prism(const rg_node *node, const rg_prism_frame *f)
 {
     uint32_t kept = (1u << node->n) - 1u;
-    for (int axis = 0; axis < 3; axis++) {
-        const f32x8 *low = (const void *)node->low_m[axis], *high = (const void *)node->high_m[axis];
-        kept &= f32x8_at_most(f32x8_all(f->low_m[axis]), *high) & f32x8_at_most(*low, f32x8_all(f->high_m[axis]));
-    }
-    for (int p = 0; p < 4; p++) {
-        const rg_box_plane *plane = &f->plane[p];
-        f32x8 least = f32x8_all(0.0f);
-        for (int axis = 0; axis < 3; axis++) {
-            const f32x8 *near = (const void *)(plane->normal[axis] > 0.0f ? node->low_m[axis] : node->high_m[axis]);
-            least += plane->normal[axis] * *near;
+    for (int i = 0; i < RG_WIDTH; i += RG_FLOATS) {
+        uint32_t these = kept >> i;
+        for (int axis = 0; axis < 3; axis++)
+            these &= floats_at_most(floats_all(f->low_m[axis]), floats_at(node->high_m[axis] + i)) &
+                     floats_at_most(floats_at(node->low_m[axis] + i), floats_all(f->high_m[axis]));
+        for (int p = 0; p < 4; p++) {
+            const rg_box_plane *plane = &f->plane[p];
+            floats least = floats_all(0.0f);
+            for (int axis = 0; axis < 3; axis++)
+                least += plane->normal[axis] * floats_at((plane->normal[axis] > 0.0f ? node->low_m[axis] : node->high_m[axis]) + i);
+            these &= floats_at_most(least, floats_all(plane->limit));
         }
-        kept &= f32x8_at_most(least, f32x8_all(plane->limit));
+        kept &= ~(((1u << RG_FLOATS) - 1u) << i) | these << i;
     }
     return kept;
 }
 
-/* rg_may_reach of eight facets. */
-RG_INLINE uint32_t facets_in_prism(const rg_leaf *leaf, const rg_prism_frame *f)
+/* rg_seen_facet of all facets of a leaf: bit i of same is of facet i. */
+typedef struct { double at_m[3][2][RG_WIDTH]; uint32_t same[3][3]; } seen_leaf;
+
+/* Bits of the facets that no plane of the prism cuts off: rg_may_reach but for its last line. */
+RG_INLINE uint32_t facets_in_prism(const rg_leaf *leaf, const rg_prism_frame *f, seen_leaf *seen)
 {
-    i64x8 beyond[4];
-    for (int p = 0; p < 4; p++) beyond[p] = (i64x8){-1, -1, -1, -1, -1, -1, -1, -1};
+    uint32_t beyond[4] = {~0u, ~0u, ~0u, ~0u};
     for (int c = 0; c < 3; c++) {
-        const f64x8 *at_x = (const void *)leaf->corner_m[c][0], *at_y = (const void *)leaf->corner_m[c][1];
-        const f64x8 *at_z = (const void *)leaf->corner_m[c][2];
-        i64x8 far[4], same[3];
-        for (int k = 0; k < 3; k++) {
-            const double *corner = f->corner_m[k], *n = f->side[k].normal, *own = f->side[3].normal;
-            const f64x8 x = *at_x - corner[0], y = *at_y - corner[1], z = *at_z - corner[2];
-            far[k] = n[0] * x + n[1] * y + n[2] * z > f->side[k].limit;
-            if (k == 0) far[3] = own[0] * x + own[1] * y + own[2] * z > f->side[3].limit;
-            same[k] = (x == 0.0) & (y == 0.0) & (z == 0.0);
+        uint32_t over[4] = {0}, same[3] = {0};
+        for (int i = 0; i < RG_WIDTH; i += RG_DOUBLES) {
+            doubles at[3], r[3];
+            for (int axis = 0; axis < 3; axis++) {
+                at[axis] = doubles_at(leaf->corner_m[c][axis] + i);
+                r[axis] = at[axis] - f->corner_m[0][axis];
+            }
+            const doubles rx = doubles_at(leaf->corner_m[c][f->kx] + i) - f->corner_m[0][f->kx],
+                          ry = doubles_at(leaf->corner_m[c][f->ky] + i) - f->corner_m[0][f->ky],
+                          rz = doubles_at(leaf->corner_m[c][f->kz] + i) - f->corner_m[0][f->kz];
+            const doubles x = rx - f->slope_x * rz, y = ry - f->slope_y * rz;
+            *(doubles *)(seen->at_m[c][0] + i) = x;
+            *(doubles *)(seen->at_m[c][1] + i) = y;
+            for (int p = 0; p < 3; p++) over[p] |= doubles_over(f->side[p][0] * x + f->side[p][1] * y, doubles_all(f->side[p][2])) << i;
+            over[3] |= doubles_over(f->own[0] * r[0] + f->own[1] * r[1] + f->own[2] * r[2], doubles_all(f->own[3])) << i;
+            for (int k = 0; k < 3; k++)
+                same[k] |= (doubles_same(at[0], doubles_all(f->corner_m[k][0])) & doubles_same(at[1], doubles_all(f->corner_m[k][1])) &
+                            doubles_same(at[2], doubles_all(f->corner_m[k][2]))) << i;
         }
-        for (int k = 0; k < 3; k++) beyond[k] &= far[k] | same[k] | same[(k + 1) % 3];
-        beyond[3] &= far[3] | same[0] | same[1] | same[2];
+        for (int p = 0; p < 3; p++) beyond[p] &= over[p] | same[p] | same[(p + 1) % 3];
+        beyond[3] &= over[3] | same[0] | same[1] | same[2];
+        for (int k = 0; k < 3; k++) seen->same[c][k] = same[k];
     }
-    return ~i64x8_bits(beyond[0] | beyond[1] | beyond[2] | beyond[3]) & ((1u << leaf->n) - 1u);
+    return ~(beyond[0] | beyond[1] | beyond[2] | beyond[3]) & ((1u << leaf->n) - 1u);
+}
+
+RG_INLINE rg_seen_facet facet_of(const seen_leaf *seen, uint32_t i)
+{
+    rg_seen_facet s;
+    for (int c = 0; c < 3; c++) {
+        s.at_m[c][0] = seen->at_m[c][0][i];
+        s.at_m[c][1] = seen->at_m[c][1][i];
+        for (int k = 0; k < 3; k++) s.same[c][k] = seen->same[c][k] >> i & 1u;
+    }
+    return s;
 }
 
 RG_INLINE size_t walk_prism(const rg_bvh *bvh, const rg_prism *prism, size_t max, uint32_t facet[])
@@ -169,8 +198,12 @@ RG_INLINE size_t walk_prism(const rg_bvh *bvh, const rg_prism *prism, size_t max
                 continue;
             }
             const rg_leaf *leaf = &bvh->leaf[node->child[c] & ~RG_BLOCK_BIT];
-            for (uint32_t lanes = facets_in_prism(leaf, &frame); lanes; lanes &= lanes - 1, n++)
-                if (n < max) facet[n] = leaf->facet[__builtin_ctz(lanes)];
+            seen_leaf seen;
+            for (uint32_t lanes = facets_in_prism(leaf, &frame, &seen); lanes; lanes &= lanes - 1) {
+                const uint32_t i = (uint32_t)__builtin_ctz(lanes);
+                const rg_seen_facet s = facet_of(&seen, i);
+                if (!rg_parts(&frame, &s, leaf, i) && n++ < max) facet[n - 1] = leaf->facet[i];
+            }
         }
     }
     return n;
