@@ -253,7 +253,8 @@ static double metadata(const struct aiScene *scene, const char *key, double othe
 
 static void name_format(char out[32], const struct aiScene *scene)
 {
-    static const struct { const char *in, *name; } known[] = {{"FBX", "FBX"}, {"glTF", "glTF"}, {"Collada", "COLLADA"}};
+    static const struct { const char *in, *name; } known[] = {{"FBX", "FBX"}, {"glTF", "glTF"}, {"Collada", "COLLADA"},
+                                                                {"STL", "STL"}, {"PLY", "PLY"}, {"Wavefront", "OBJ"}};
     const char *said = "Assimp";
     for (unsigned i = 0; scene->mMetaData && i < scene->mMetaData->mNumProperties; i++)
         if (strcmp(scene->mMetaData->mKeys[i].data, AI_METADATA_SOURCE_FORMAT) == 0 && scene->mMetaData->mValues[i].mType == AI_AISTRING)
@@ -263,6 +264,12 @@ static void name_format(char out[32], const struct aiScene *scene)
     const char *end = strstr(said, " Importer");
     if (!end) end = strstr(said, " Reader");
     snprintf(out, 32, "%.*s", end ? (int)(end - said < 31 ? end - said : 31) : 31, said);
+}
+
+/* Files that our own readers refuse are not to come in by this door. */
+static bool has_own_reader(const char *format)
+{
+    return strcmp(format, "STL") == 0 || strcmp(format, "PLY") == 0 || strcmp(format, "OBJ") == 0;
 }
 
 static rg_axis axis_of(double line, double sign, rg_axis otherwise)
@@ -276,7 +283,6 @@ static transform find_origin(rg_origin *origin, const struct aiScene *scene)
     const transform as_is = {{{1, 0, 0, 0}, {0, 1, 0, 0}, {0, 0, 1, 0}}};
     const transform z_to_y = {{{1, 0, 0, 0}, {0, 0, 1, 0}, {0, -1, 0, 0}}};
     const transform root = transform_of(&scene->mRootNode->mTransformation);
-    name_format(origin->format, scene);
     if (strcmp(origin->format, "FBX") == 0) {
         const double unit_cm = metadata(scene, "UnitScaleFactor", 1.0);
         origin->own.unit_m = isfinite(unit_cm) && unit_cm > 0.0 ? 0.01 * unit_cm : 0.01;
@@ -333,7 +339,9 @@ rg_status rg_read_assimp(rg_soup *soup, rg_origin *origin, const rg_file *file, 
     rg_status status = RG_OK;
     if (!scene) status = say_why(err);
     else if (!scene->mRootNode) status = rg_fail(err, RG_BAD_INPUT, "there is no scene in it");
-    else status = walk(soup, scene, find_origin(origin, scene), err);
+    else name_format(origin->format, scene);
+    if (!status && has_own_reader(origin->format)) status = rg_fail(err, RG_BAD_INPUT, "it looks like %s, but is none", origin->format);
+    if (!status) status = walk(soup, scene, find_origin(origin, scene), err);
     aiReleaseImport(scene);
     aiReleasePropertyStore(options);
     free(name);

@@ -83,6 +83,7 @@ static rg_status read_facets(rg_soup *soup, rg_origin *origin, const rg_file *fi
         strcpy(origin->format, ply ? "PLY" : stl ? "STL" : "OBJ");
         return (ply ? rg_read_ply : stl ? rg_read_stl : rg_read_obj)(soup, file, err);
     }
+    if (named_stl && file->n >= 5 && strncasecmp(file->text, "solid", 5) == 0) return rg_read_stl(soup, file, err);
     const bool own_name = named_obj || named_stl || named_ply;
     rg_error first = {""};
     rg_status status = own_name ? RG_BAD_INPUT : rg_read_assimp(soup, origin, file, false, &first);
