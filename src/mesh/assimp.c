@@ -5,6 +5,7 @@
  */
 #include "base/vec3.h"
 #include "mesh/readers.h"
+#include "mesh/text.h"
 #include <assimp/cfileio.h>
 #include <assimp/cimport.h>
 #include <assimp/commonMetaData.h>
@@ -132,14 +133,17 @@ static double largest_scale(const transform *t)
     return fmax(vec3_norm(column(t, 0)), fmax(vec3_norm(column(t, 1)), vec3_norm(column(t, 2))));
 }
 
-/* Names that a format or its reader gives to what has none. */
+/* Names that a format or its reader gives to what has none, and scenes that are called just that. */
 static bool is_generic(const char *name)
 {
-    static const char *const generic[] = {"DefaultMaterial", "Default_Material", "(null)", "None", "ROOT", "RootNode", "$ColladaAutoName$",
-                                          "defaultobject"};
-    for (size_t i = 0; i < sizeof generic / sizeof generic[0]; i++)
-        if (strcmp(name, generic[i]) == 0) return true;
-    return name[0] == 0 || name[0] == '<' || strncmp(name, "nodes[", 6) == 0 || strncmp(name, "meshes[", 7) == 0;
+    static const char *const whole[] = {"DefaultMaterial", "Default_Material", "(null)", "None", "ROOT", "RootNode", "Scene", "scene",
+                                        "world", "World", "defaultobject"};
+    static const char *const start[] = {"<", "%%%", "$Collada", "nodes[", "meshes["};
+    for (size_t i = 0; i < sizeof whole / sizeof whole[0]; i++)
+        if (strcmp(name, whole[i]) == 0) return true;
+    for (size_t i = 0; i < sizeof start / sizeof start[0]; i++)
+        if (strncmp(name, start[i], strlen(start[i])) == 0) return true;
+    return name[0] == 0;
 }
 
 static rg_status part_of(rg_soup *soup, uint32_t *part, const struct aiScene *scene, const struct aiNode *node,
@@ -148,7 +152,7 @@ static rg_status part_of(rg_soup *soup, uint32_t *part, const struct aiScene *sc
     struct aiString material = {0, ""};
     if (mesh->mMaterialIndex < scene->mNumMaterials)
         aiGetMaterialString(scene->mMaterials[mesh->mMaterialIndex], AI_MATKEY_NAME, &material);
-    const char *group = node == scene->mRootNode || is_generic(node->mName.data) ? mesh->mName.data : node->mName.data;
+    const char *group = is_generic(node->mName.data) ? mesh->mName.data : node->mName.data;
     if (is_generic(group)) group = "";
     const char *tail = is_generic(material.data) ? "" : material.data;
     return rg_soup_part_of(soup, part, group, strnlen(group, MAXLEN), tail, strnlen(tail, MAXLEN), err);
@@ -319,15 +323,45 @@ static rg_status say_why(rg_error *err)
     return rg_fail(err, RG_BAD_INPUT, "it cannot be read as a mesh: %s", clean);
 }
 
+/* Assimp fills memory for as many vertices as an OFF promises before it looks for one. A vertex is three numbers with a blank each. */
+static rg_status check_promise(const rg_file *file, rg_error *err)
+{
+    rg_text text = {file->text, file->text + file->n, 1};
+    const rg_word first = rg_word_anywhere(&text);
+    int64_t n_vertices, n_faces;
+    if (first.n < 3 || memcmp(first.at + first.n - 3, "OFF", 3) != 0) return RG_OK;
+    if (!rg_whole_of(&n_vertices, rg_word_anywhere(&text)) || !rg_whole_of(&n_faces, rg_word_anywhere(&text))) return RG_OK;
+    if (n_vertices < 0 || n_faces < 0 || (uint64_t)n_vertices > file->n / 6 || (uint64_t)n_faces > file->n / 2)
+        return rg_fail(err, RG_BAD_INPUT, "its head promises %lld vertices and %lld faces, which its %zu bytes cannot hold",
+                       (long long)n_vertices, (long long)n_faces, file->n);
+    return RG_OK;
+}
+
+/* An ending for a file whose own is wrong. Some readers of Assimp look at the content only when the name is theirs. */
+static const char *ending_of(const rg_file *file)
+{
+    static const struct { const char *start, *within, *ending; } known[] = {
+        {"glTF", "", "glb"}, {"{", "\"asset\"", "gltf"}, {"Kaydara FBX Binary", "", "fbx"}, {"<", "<COLLADA", "dae"}, {"; FBX", "", "fbx"}};
+    for (size_t i = 0; i < sizeof known / sizeof known[0]; i++) {
+        const size_t n = strlen(known[i].start);
+        if (file->n >= n && memcmp(file->text, known[i].start, n) == 0 &&
+            memmem(file->text, file->n, known[i].within, strlen(known[i].within)))
+            return known[i].ending;
+    }
+    return "anymesh";       /* that no reader claims, so that all look */
+}
+
 rg_status rg_read_assimp(rg_soup *soup, rg_origin *origin, const rg_file *file, bool by_content, rg_error *err)
 {
+    rg_status status = check_promise(file, err);
+    if (status) return status;
     const char *slash = strrchr(file->path, '/');
     const size_t folder = slash ? (size_t)(slash - file->path) + 1 : 0;
     char *name = by_content ? malloc(folder + 16) : strdup(file->path);
     if (!name) return rg_fail(err, RG_NO_MEMORY, "no memory for a name");
     if (by_content) {
         memcpy(name, file->path, folder);
-        strcpy(name + folder, "a.anymesh");     /* an ending that no reader claims */
+        sprintf(name + folder, "a.%s", ending_of(file));
     }
     shelf s = {file, name};
     struct aiFileIO io = {open_named, close_file, (aiUserData)&s};
@@ -336,7 +370,6 @@ rg_status rg_read_assimp(rg_soup *soup, rg_origin *origin, const rg_file *file, 
     aiSetImportPropertyInteger(options, AI_CONFIG_IMPORT_AC_SEPARATE_BFCULL, 0);
     aiSetImportPropertyInteger(options, AI_CONFIG_IMPORT_AC_EVAL_SUBDIVISION, 0);  /* a digit in the file would be 4^n facets */
     const struct aiScene *scene = aiImportFileExWithProperties(name, 0, &io, options);
-    rg_status status = RG_OK;
     if (!scene) status = say_why(err);
     else if (!scene->mRootNode) status = rg_fail(err, RG_BAD_INPUT, "there is no scene in it");
     else name_format(origin->format, scene);
