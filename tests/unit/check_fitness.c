@@ -198,6 +198,22 @@ START_TEST(panel_is_as_measured)
 }
 END_TEST
 
+/* The net's points anywhere within 0.35 of a cell of their place, as a mesh generator of its own mind puts them. */
+static size_t cells_u, cells_v;
+static void on_restless_torus(double u, double v, double r[3])
+{
+    on_torus(u + 0.7 * (drand48() - 0.5) / (double)cells_u, v + 0.7 * (drand48() - 0.5) / (double)cells_v, r);
+}
+
+START_TEST(uneven_facets_are_as_measured)
+{
+    cells_u = 23, cells_v = 39;
+    hold_to_truth(net(24, 40, on_restless_torus, (split)_i), "restless torus", off_torus, 0.1, 0.93);
+    cells_u = 59, cells_v = 23;
+    hold_to_truth(net(60, 24, on_restless_torus, (split)_i), "restless torus, long facets", off_torus, 0.1, 0.93);
+}
+END_TEST
+
 /* A closed prism over a ring of points in the xy plane, axis z. */
 static rg_mesh *prism(size_t n, const double ring[][2], double length_m)
 {
@@ -430,6 +446,7 @@ int main(void)
     tcase_add_loop_test(tests, tube_is_as_measured, 0, N_SPLITS);
     tcase_add_loop_test(tests, torus_is_as_measured, 0, N_SPLITS);
     tcase_add_loop_test(tests, panel_is_as_measured, 0, N_SPLITS);
+    tcase_add_loop_test(tests, uneven_facets_are_as_measured, 0, N_SPLITS);
     tcase_add_loop_test(tests, fillets_are_judged_and_the_flats_between_them_are_not, 3, 9);
     tcase_add_test(tests, fillets_of_two_chords_are_unsure);
     tcase_add_test(tests, flat_facets_have_no_limit);
