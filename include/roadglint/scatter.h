@@ -6,6 +6,13 @@
 
 enum { RG_HH, RG_VV, RG_HV, RG_VH, RG_N_POL };   /* first letter received, second transmitted */
 
+/** Mechanisms, to be joined by |. */
+enum {
+    RG_SURFACE = 1,     /* physical optics of the first bounce */
+    RG_EDGE = 2,        /* fringe currents at edges, first order */
+    RG_BOUNCE = 4       /* two reflections and more, physical optics at the last one */
+};
+
 /** Level of an amplitude: 20 log10 |s_m|, dBsm; never under -200. */
 RG_API double rg_dbsm(double complex s_m);
 

@@ -10,6 +10,8 @@ typedef struct {
     const double *el_deg, *az_deg, *freq_hz;
     bool parts;                     /* one amplitude per mesh part beside the total */
     int n_threads;                  /* 0: one per processor */
+    unsigned mechanisms;            /* RG_SURFACE | RG_EDGE | RG_BOUNCE; 0: RG_SURFACE */
+    int n_bounces;                  /* reflections that RG_BOUNCE follows, 2 .. 16; 0: 4 */
 } rg_sweep_plan;
 
 /** All of one aspect. slot 0 is the total; with plan.parts slot 1 + p is part p alone. */
@@ -27,7 +29,7 @@ typedef rg_status rg_sweep_sink(void *user, const rg_sweep_aspect *aspect, rg_er
  *
  *    stop   may be NULL; once it is not 0 the sweep ends with RG_STOPPED within a fraction of a second
  *
- *  RG_BAD_VALUE (an empty list, a value that is not finite, a frequency that is not positive), RG_NO_MEMORY, RG_STOPPED, or what
+ *  RG_BAD_VALUE (an empty list, a value that is not finite, a frequency that is not positive, bounces out of range), RG_NO_MEMORY, RG_STOPPED, or what
  *  the sink returned.
  */
 RG_API rg_status rg_sweep(const rg_scene *scene, const rg_sweep_plan *plan, rg_sweep_sink *sink, void *user,

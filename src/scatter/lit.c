@@ -1,5 +1,6 @@
 /* lit.c - which portions of which facets does the radar see? */
 #include "scatter/lit.h"
+#include "base/room.h"
 #include "base/sum.h"
 #include <math.h>
 #include <stdlib.h>
@@ -17,7 +18,6 @@ struct rg_lit_scratch {
     uint32_t *list;                 /* indices of regions, one stretch for each level of the halving */
     size_t list_room;
     rg_polygon cut[2][POLYGONS_AT_ONCE];
-    rg_polygons lit;                /* of the facet in hand, in rg_lit_block */
 };
 
 /* What add_lit hands down unchanged. */
@@ -36,25 +36,12 @@ void rg_lit_scratch_free(rg_lit_scratch *scratch)
     free(scratch->near);
     free(scratch->region);
     free(scratch->list);
-    free(scratch->lit.polygon);
     free(scratch);
-}
-
-/* Room for n elements at least; doubles, so that growing is rare. False without memory, and then nothing has changed. */
-static bool make_room(void **array, size_t *room, size_t n, size_t element)
-{
-    if (n <= *room) return true;
-    const size_t wanted = n > 2 * *room ? n : 2 * *room;
-    void *grown = realloc(*array, wanted * element);
-    if (!grown) return false;
-    *array = grown;
-    *room = wanted;
-    return true;
 }
 
 static bool add_polygon(rg_polygons *list, const rg_polygon *polygon)
 {
-    if (!make_room((void **)&list->polygon, &list->room, list->n + 1, sizeof *list->polygon)) return false;
+    if (!rg_make_room((void **)&list->polygon, &list->room, list->n + 1, sizeof *list->polygon)) return false;
     list->polygon[list->n++] = *polygon;
     return true;
 }
@@ -165,7 +152,7 @@ static bool add_lit(const lit_job *job, const rg_polygon *part, size_t first, si
         if (half[side].n == 0) continue;
         size_t kept = 0;
         bool covered = false;
-        if (!make_room((void **)&scratch->list, &scratch->list_room, first + 2 * n, sizeof *scratch->list)) return false;
+        if (!rg_make_room((void **)&scratch->list, &scratch->list_room, first + 2 * n, sizeof *scratch->list)) return false;
         for (size_t i = 0; i < n && !covered; i++) {
             const uint32_t region = scratch->list[first + i];
             const reach_of_region found = reach(&scratch->region[region], &half[side]);
@@ -191,7 +178,7 @@ static bool query_prism(const rg_scene *scene, const rg_seen *seen, const rg_fac
         for (int axis = 0; axis < 3; axis++) prism.corner_m[i][axis] = scene->mesh->vertex_m[face->vertex[i]][axis];
     *n = rg_bvh_in_prism(scene->bvh, &prism, scratch->near_room, scratch->near);
     if (*n > scratch->near_room) {
-        if (!make_room((void **)&scratch->near, &scratch->near_room, *n, sizeof *scratch->near)) return false;
+        if (!rg_make_room((void **)&scratch->near, &scratch->near_room, *n, sizeof *scratch->near)) return false;
         *n = rg_bvh_in_prism(scene->bvh, &prism, scratch->near_room, scratch->near);
     }
     return true;
@@ -215,8 +202,8 @@ bool rg_lit_part(const rg_scene *scene, const rg_seen *seen, const rg_face *face
         if (found == REACHES) scratch->near[n_hiding++] = near;
     }
     if (n_hiding == 0) return add_polygon(lit, part);
-    if (!make_room((void **)&scratch->region, &scratch->region_room, n_hiding, sizeof *scratch->region) ||
-        !make_room((void **)&scratch->list, &scratch->list_room, n_hiding, sizeof *scratch->list))
+    if (!rg_make_room((void **)&scratch->region, &scratch->region_room, n_hiding, sizeof *scratch->region) ||
+        !rg_make_room((void **)&scratch->list, &scratch->list_room, n_hiding, sizeof *scratch->list))
         return false;
     qsort(scratch->near, n_hiding, sizeof *scratch->near, by_index);    /* the tree's order must not show in the result */
     for (size_t i = 0; i < n_hiding; i++) {
@@ -230,15 +217,8 @@ bool rg_lit_part(const rg_scene *scene, const rg_seen *seen, const rg_face *face
 
 static bool make_piece_room(rg_pieces *pieces, size_t n)
 {
-    bool fits = true;
-    size_t room = pieces->room;
-    for (int i = 0; i < 3; i++) {
-        size_t path_room = pieces->room;
-        fits = fits && make_room((void **)&pieces->path_m[i], &path_room, n, sizeof(double));
-    }
-    fits = fits && make_room((void **)&pieces->weight_m2, &room, n, sizeof(double));
-    if (fits) pieces->room = room;
-    return fits;
+    double **array[] = {&pieces->path_m[0], &pieces->path_m[1], &pieces->path_m[2], &pieces->weight_m2};
+    return rg_make_rooms(array, sizeof array / sizeof array[0], &pieces->room, n);
 }
 
 void rg_pieces_free(rg_pieces *pieces)
@@ -248,8 +228,7 @@ void rg_pieces_free(rg_pieces *pieces)
     *pieces = (rg_pieces){0};
 }
 
-/* A polygon as a fan of triangles. */
-static bool add_pieces(rg_pieces *pieces, const rg_face *face, const rg_polygon *p)
+bool rg_pieces_add(rg_pieces *pieces, const rg_face *face, const rg_polygon *p)
 {
     if (!make_piece_room(pieces, pieces->n + (size_t)p->n)) return false;
     for (int i = 1; i + 1 < p->n; i++) {
@@ -265,7 +244,7 @@ static bool add_pieces(rg_pieces *pieces, const rg_face *face, const rg_polygon 
     return true;
 }
 
-static bool pad(rg_pieces *pieces)
+bool rg_pieces_pad(rg_pieces *pieces)
 {
     if (!make_piece_room(pieces, pieces->n + RG_LANES)) return false;
     for (; pieces->n % RG_LANES; pieces->n++) {
@@ -273,19 +252,4 @@ static bool pad(rg_pieces *pieces)
         pieces->weight_m2[pieces->n] = 0.0;
     }
     return true;
-}
-
-rg_status rg_lit_block(const rg_scene *scene, const rg_seen *seen, const rg_block *block, double grain_m, rg_lit_scratch *scratch,
-                       rg_pieces *pieces, rg_error *err)
-{
-    bool enough = true;
-    pieces->n = 0;
-    for (uint32_t i = 0; i < block->n && enough; i++) {
-        rg_face face;
-        if (!rg_face_seen(&face, scene->mesh, seen, block->first + i)) continue;
-        scratch->lit.n = 0;
-        enough = rg_lit_part(scene, seen, &face, &rg_whole_facet, NULL, grain_m, scratch, &scratch->lit);
-        for (size_t k = 0; k < scratch->lit.n && enough; k++) enough = add_pieces(pieces, &face, &scratch->lit.polygon[k]);
-    }
-    return enough && pad(pieces) ? RG_OK : rg_fail(err, RG_NO_MEMORY, "no memory for the lit pieces of %u facets", block->n);
 }

@@ -37,9 +37,8 @@ typedef struct {
 
 void rg_pieces_free(rg_pieces *pieces);
 
-/* The lit pieces of a block's facets, padded with pieces of weight 0 to a multiple of RG_LANES; what pieces held before is gone.
- * RG_NO_MEMORY. */
-rg_status rg_lit_block(const rg_scene *scene, const rg_seen *seen, const rg_block *block, double grain_m, rg_lit_scratch *scratch,
-                       rg_pieces *pieces, rg_error *err);
+/* Appends a polygon of a face as a fan of triangles; adds pieces of weight 0 up to a multiple of RG_LANES. False without memory. */
+bool rg_pieces_add(rg_pieces *pieces, const rg_face *face, const rg_polygon *polygon);
+bool rg_pieces_pad(rg_pieces *pieces);
 
 #endif

@@ -86,3 +86,28 @@ bool rg_occluder_region(rg_region *region, const rg_face *face, const rg_face *o
     }
     return !horizon || keep_within(horizon, region, face, other, over_other);
 }
+
+bool rg_occluder_stretch(double stretch[2], const rg_face *face, const uint32_t vertex[2], const double end_m[2][3], double same_m)
+{
+    const double *n = face->normal_m2, length = sqrt(n[0] * n[0] + n[1] * n[1] + n[2] * n[2]);
+    double f[4][2];                                         /* positive where hidden: beside each edge of the face, and behind its plane */
+    for (int i = 0; i < 2; i++) {
+        int nearest = 0;
+        for (int e = 0; e < 3; e++) {
+            f[e][i] = beside_edge(face, e, end_m[i]);
+            if (face->vertex[e] == vertex[i]) nearest = e;
+        }
+        const double *o = face->at_m[nearest], *x = end_m[i];
+        f[3][i] = -(n[0] * (x[0] - o[0]) + n[1] * (x[1] - o[1]) + n[2] * (x[2] - o[2])) / length;
+    }
+    if (fmax(f[3][0], f[3][1]) <= same_m) return false;
+    stretch[0] = 0.0;
+    stretch[1] = 1.0;
+    for (int plane = 0; plane < 4; plane++) {
+        const double a = f[plane][0], b = f[plane][1];
+        if (a <= 0.0 && b <= 0.0) return false;
+        if (a < 0.0) stretch[0] = fmax(stretch[0], a / (a - b));
+        if (b < 0.0) stretch[1] = fmin(stretch[1], a / (a - b));
+    }
+    return stretch[0] < stretch[1];
+}

@@ -11,4 +11,9 @@ typedef struct { uint32_t facet; double at_m[3], normal[3]; } rg_horizon;
  * them lie in one plane: there the lower index hides the other. horizon may be NULL. */
 bool rg_occluder_region(rg_region *region, const rg_face *face, const rg_face *other, double same_m, const rg_horizon *horizon);
 
+/* The stretch of an edge that a face hides, as shares of its length from end_m[0]; false if it hides nothing. An edge that lies in the
+ * face's plane, nearer than same_m, is not hidden by it.
+ *    vertex[2]    the mesh's vertices at its ends */
+bool rg_occluder_stretch(double stretch[2], const rg_face *face, const uint32_t vertex[2], const double end_m[2][3], double same_m);
+
 #endif

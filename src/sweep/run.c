@@ -1,6 +1,6 @@
 /* run.c - many aspects on all cores, handed over in the order of the table */
 #include <roadglint/sweep.h>
-#include "scatter/surface.h"
+#include "scatter/aspect.h"
 #include <math.h>
 #include <omp.h>
 #include <stdlib.h>
@@ -11,10 +11,11 @@ enum { BATCH_PER_THREAD = 16 };
 typedef struct {
     const rg_scene *scene;
     const rg_sweep_plan *plan;
+    rg_aspect_job job;
     const volatile sig_atomic_t *stop;
     size_t n_slots;                         /* amplitudes of an aspect, each n_freq long */
     int n_benches;                          /* aspects at a time; where they are few, the threads share one instead */
-    rg_surface_bench **bench;
+    rg_aspect_bench **bench;
     size_t batch;
     double complex (*s_m)[RG_N_POL];        /* [batch][n_slots][n_freq] */
 } sweep_work;
@@ -37,20 +38,20 @@ static rg_status start_work(sweep_work *work, rg_error *err)
     work->n_slots = 1 + (plan->parts ? rg_mesh_n_parts(rg_scene_mesh(work->scene)) : 0);
     work->n_benches = share_aspect ? 1 : n_threads;
     work->batch = share_aspect ? 1 : BATCH_PER_THREAD * (size_t)n_threads;
-    work->bench = calloc((size_t)work->n_benches, sizeof(rg_surface_bench *));
+    work->bench = calloc((size_t)work->n_benches, sizeof(rg_aspect_bench *));
     work->s_m = calloc(work->batch * work->n_slots * plan->n_freq, sizeof *work->s_m);
     if (!work->bench || !work->s_m)
         return rg_fail(err, RG_NO_MEMORY, "no memory for %zu aspects at a time of %zu frequencies and %zu parts", work->batch,
                        plan->n_freq, work->n_slots);
     rg_status status = RG_OK;
     for (int t = 0; t < work->n_benches && !status; t++)
-        status = rg_surface_bench_new(&work->bench[t], work->scene, share_aspect ? n_threads : 1, err);
+        status = rg_aspect_bench_new(&work->bench[t], work->scene, &work->job, share_aspect ? n_threads : 1, err);
     return status;
 }
 
 static void end_work(sweep_work *work)
 {
-    for (int t = 0; t < work->n_benches && work->bench; t++) rg_surface_bench_free(work->bench[t]);
+    for (int t = 0; t < work->n_benches && work->bench; t++) rg_aspect_bench_free(work->bench[t]);
     free(work->bench);
     free(work->s_m);
 }
@@ -71,8 +72,8 @@ static rg_status run_batch(sweep_work *work, size_t first, size_t n, rg_error *e
         const rg_view view = rg_view_of_deg(plan->az_deg[aspect % plan->n_az], plan->el_deg[aspect / plan->n_az]);
         double complex(*s_m)[RG_N_POL] = slots_of(work, i);
         const rg_status status =
-            rg_surface_aspect(work->scene, work->bench[work->n_benches > 1 ? omp_get_thread_num() : 0], &view, plan->n_freq,
-                              plan->freq_hz, s_m, plan->parts ? s_m + plan->n_freq : NULL, work->stop, &mine);
+            rg_aspect_run(work->bench[work->n_benches > 1 ? omp_get_thread_num() : 0], &view, s_m,
+                          plan->parts ? s_m + plan->n_freq : NULL, work->stop, &mine);
         if (status) {
 #pragma omp critical
             first_status = rg_fail(err, status, "%s", mine.text);
@@ -84,10 +85,12 @@ static rg_status run_batch(sweep_work *work, size_t first, size_t n, rg_error *e
 rg_status rg_sweep(const rg_scene *scene, const rg_sweep_plan *plan, rg_sweep_sink *sink, void *user,
                    const volatile sig_atomic_t *stop, rg_error *err)
 {
-    sweep_work work = {.scene = scene, .plan = plan, .stop = stop};
+    sweep_work work = {.scene = scene, .plan = plan, .stop = stop,
+                       .job = {.mechanisms = plan->mechanisms ? plan->mechanisms : RG_SURFACE,
+                               .n_bounces = plan->n_bounces ? plan->n_bounces : 4, .n_freq = plan->n_freq, .freq_hz = plan->freq_hz}};
     rg_status status = check_angles("elevation", plan->n_el, plan->el_deg, err);
     if (!status) status = check_angles("azimuth", plan->n_az, plan->az_deg, err);
-    if (!status) status = rg_check_frequencies(plan->n_freq, plan->freq_hz, err);
+    if (!status) status = rg_aspect_job_check(&work.job, err);
     if (!status) status = start_work(&work, err);
     const size_t n_aspects = plan->n_el * plan->n_az;
     for (size_t first = 0; first < n_aspects && !status; first += work.batch) {

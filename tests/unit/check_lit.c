@@ -50,19 +50,26 @@ static double lit_area(const world *w, const rg_view *view, double grain_m, size
     rg_seen seen = {0};
     rg_lit_scratch *scratch = rg_lit_scratch_new();
     rg_pieces pieces = {0};
+    rg_polygons lit = {0};
     double area_m2 = 0.0;
     ck_assert(rg_seen_new(&seen, w->mesh, NULL) == RG_OK);
     rg_seen_turn(&seen, w->mesh, view);
     if (n_pieces) *n_pieces = 0;
-    for (size_t b = 0; b < w->scene->n_blocks; b++) {
-        ck_assert(rg_lit_block(w->scene, &seen, &w->scene->block[b], grain_m, scratch, &pieces, NULL) == RG_OK);
-        ck_assert_uint_eq(pieces.n % RG_LANES, 0);
-        for (size_t i = 0; i < pieces.n; i++) {
-            ck_assert(pieces.weight_m2[i] >= 0.0);
-            area_m2 += 0.5 * pieces.weight_m2[i];
-            if (n_pieces) *n_pieces += pieces.weight_m2[i] > 0.0;
-        }
+    for (uint32_t f = 0; f < w->mesh->n_facets; f++) {
+        rg_face face;
+        lit.n = 0;
+        if (!rg_face_seen(&face, w->mesh, &seen, f)) continue;
+        ck_assert(rg_lit_part(w->scene, &seen, &face, &rg_whole_facet, NULL, grain_m, scratch, &lit));
+        for (size_t i = 0; i < lit.n; i++) ck_assert(rg_pieces_add(&pieces, &face, &lit.polygon[i]));
     }
+    ck_assert(rg_pieces_pad(&pieces));
+    ck_assert_uint_eq(pieces.n % RG_LANES, 0);
+    for (size_t i = 0; i < pieces.n; i++) {
+        ck_assert(pieces.weight_m2[i] >= 0.0);
+        area_m2 += 0.5 * pieces.weight_m2[i];
+        if (n_pieces) *n_pieces += pieces.weight_m2[i] > 0.0;
+    }
+    free(lit.polygon);
     rg_pieces_free(&pieces);
     rg_lit_scratch_free(scratch);
     rg_seen_free(&seen);
