@@ -1,0 +1,11 @@
+/* level.h - an amplitude's level in decibels */
+#ifndef RG_BASE_LEVEL_H
+#define RG_BASE_LEVEL_H
+#include <complex.h>
+
+#define RG_LEVEL_FLOOR_DB (-200.0)
+
+/* 20 log10 |s|, and the floor for all that is less, NaN included. */
+double rg_level_db(double complex s);
+
+#endif
