@@ -11,6 +11,14 @@
 
 typedef struct { float enter_m; uint32_t child, n_facets; } step;
 
+/* Most rays of a large tree wait for memory: what will be looked at is fetched as soon as that is known. */
+RG_INLINE void fetch(const rg_bvh *bvh, uint32_t child, uint32_t n_facets)
+{
+    const char *at = n_facets ? (const char *)&bvh->leaf[child & ~RG_BLOCK_BIT] : (const char *)&bvh->node[child];
+    const int size = n_facets ? (int)sizeof(rg_leaf) : (int)sizeof(rg_node);
+    for (int i = 0; i < size; i += 64) __builtin_prefetch(at + i);
+}
+
 /* Bits of the children that the ray meets up to limit_m, and where it enters them. */
 RG_INLINE uint32_t meet_boxes(const rg_node *node, const rg_box_ray *ray, float limit_m, float enter_m[RG_WIDTH])
 {
@@ -57,7 +65,9 @@ RG_INLINE bool walk_any(const rg_bvh *bvh, const rg_ray *ray)
     while (top > 0) {
         const rg_node *node = &bvh->node[stack[--top]];
         float enter_m[RG_WIDTH];
-        for (uint32_t met = meet_boxes(node, &box, limit_m, enter_m); met; met &= met - 1) {
+        uint32_t met = meet_boxes(node, &box, limit_m, enter_m);
+        for (uint32_t ahead = met; ahead; ahead &= ahead - 1) fetch(bvh, node->child[__builtin_ctz(ahead)], node->n_facets[__builtin_ctz(ahead)]);
+        for (; met; met &= met - 1) {
             const uint32_t c = (uint32_t)__builtin_ctz(met);
             if (node->n_facets[c] == 0) {
                 stack[top++] = node->child[c];
@@ -73,47 +83,84 @@ RG_INLINE bool walk_any(const rg_bvh *bvh, const rg_ray *ray)
 }
 
 /* Adds the children that were met to the stack, the nearest on top. */
-RG_INLINE int push_met(step stack[], int top, const rg_node *node, uint32_t met, const float enter_m[])
+RG_INLINE int push_met(const rg_bvh *bvh, step stack[], int top, const rg_node *node, uint32_t met, const float enter_m[])
 {
     const int bottom = top;
     for (; met; met &= met - 1) {
         const uint32_t c = (uint32_t)__builtin_ctz(met);
         const step s = {enter_m[c], node->child[c], node->n_facets[c]};
         int at = top++;
+        fetch(bvh, s.child, s.n_facets);
         for (; at > bottom && stack[at - 1].enter_m < s.enter_m; at--) stack[at] = stack[at - 1];
         stack[at] = s;
     }
     return top;
 }
 
+/* One ray on its way. */
+typedef struct {
+    const rg_ray *ray;
+    rg_ray_frame frame;
+    rg_box_ray box;
+    rg_hit best;
+    float limit_m;
+    int top;
+    step stack[RG_STACK];
+} walker;
+
+RG_INLINE void set_out(const rg_bvh *bvh, walker *w, const rg_ray *ray)
+{
+    w->ray = ray;
+    w->frame = rg_ray_frame_of(ray);
+    w->box = rg_box_ray_of(bvh, ray, &w->frame);
+    w->best = (rg_hit){INFINITY, 0.0, 0.0, RG_NO_HIT};
+    w->limit_m = rg_box_limit(&w->box, ray->t_max_m);
+    w->top = 1;
+    w->stack[0] = (step){0.0f, 0, 0};
+}
+
+/* One node or one leaf. False at the journey's end. */
+RG_INLINE bool advance(const rg_bvh *bvh, walker *w)
+{
+    if (w->top == 0) return false;
+    const step now = w->stack[--w->top];
+    if (now.enter_m > w->limit_m * RG_LEAVE) return true;
+    if (now.n_facets == 0) {
+        const rg_node *node = &bvh->node[now.child];
+        float enter_m[RG_WIDTH];
+        const uint32_t met = meet_boxes(node, &w->box, w->limit_m, enter_m);
+        w->top = push_met(bvh, w->stack, w->top, node, met, enter_m);
+        return true;
+    }
+    const rg_leaf *leaf = &bvh->leaf[now.child & ~RG_BLOCK_BIT];
+    rg_hit hit;
+    for (uint32_t lanes = meet_facets(leaf, &w->frame); lanes; lanes &= lanes - 1)
+        if (rg_meets(w->ray, &w->frame, leaf, (uint32_t)__builtin_ctz(lanes), &hit) && rg_nearer(&hit, &w->best)) {
+            w->best = hit;
+            w->limit_m = rg_box_limit(&w->box, hit.t_m);
+        }
+    return true;
+}
+
 RG_INLINE rg_hit walk_closest(const rg_bvh *bvh, const rg_ray *ray)
 {
-    const rg_ray_frame frame = rg_ray_frame_of(ray);
-    const rg_box_ray box = rg_box_ray_of(bvh, ray, &frame);
-    float limit_m = rg_box_limit(&box, ray->t_max_m);
-    rg_hit best = {INFINITY, 0.0, 0.0, RG_NO_HIT};
-    step stack[RG_STACK];
-    int top = 0;
-    stack[top++] = (step){0.0f, 0, 0};
-    while (top > 0) {
-        const step now = stack[--top];
-        if (now.enter_m > limit_m * RG_LEAVE) continue;
-        if (now.n_facets == 0) {
-            const rg_node *node = &bvh->node[now.child];
-            float enter_m[RG_WIDTH];
-            const uint32_t met = meet_boxes(node, &box, limit_m, enter_m);
-            top = push_met(stack, top, node, met, enter_m);
-            continue;
+    walker w;
+    for (set_out(bvh, &w, ray); advance(bvh, &w);) continue;
+    return w.best;
+}
+
+/* All rays take a step in turn, so that while one waits for memory the others go on. */
+RG_INLINE void walk_together(const rg_bvh *bvh, size_t n, const rg_ray ray[], bool any, rg_hit hit[])
+{
+    walker w[RG_WIDTH];
+    uint32_t going = (1u << n) - 1u;
+    for (size_t i = 0; i < n; i++) set_out(bvh, &w[i], &ray[i]);
+    while (going)
+        for (uint32_t left = going; left; left &= left - 1) {
+            const uint32_t i = (uint32_t)__builtin_ctz(left);
+            if (!advance(bvh, &w[i]) || (any && w[i].best.facet != RG_NO_HIT)) going &= ~(1u << i);
         }
-        const rg_leaf *leaf = &bvh->leaf[now.child & ~RG_BLOCK_BIT];
-        rg_hit hit;
-        for (uint32_t lanes = meet_facets(leaf, &frame); lanes; lanes &= lanes - 1)
-            if (rg_meets(ray, &frame, leaf, (uint32_t)__builtin_ctz(lanes), &hit) && rg_nearer(&hit, &best)) {
-                best = hit;
-                limit_m = rg_box_limit(&box, hit.t_m);
-            }
-    }
-    return best;
+    for (size_t i = 0; i < n; i++) hit[i] = w[i].best;
 }
 
 /* Bits of the boxes that no plane of the prism cuts off. */
@@ -217,11 +264,10 @@ static size_t in_prism(const rg_bvh *bvh, const rg_prism *prism, size_t max, uin
 }
 static void any_packet(const rg_bvh *bvh, size_t n, const rg_ray ray[], bool hit[])
 {
-    for (size_t i = 0; i < n; i++) hit[i] = walk_any(bvh, &ray[i]);
+    rg_hit first[RG_WIDTH];
+    walk_together(bvh, n, ray, true, first);
+    for (size_t i = 0; i < n; i++) hit[i] = first[i].facet != RG_NO_HIT;
 }
-static void closest_packet(const rg_bvh *bvh, size_t n, const rg_ray ray[], rg_hit hit[])
-{
-    for (size_t i = 0; i < n; i++) hit[i] = walk_closest(bvh, &ray[i]);
-}
+static void closest_packet(const rg_bvh *bvh, size_t n, const rg_ray ray[], rg_hit hit[]) { walk_together(bvh, n, ray, false, hit); }
 
 #endif
