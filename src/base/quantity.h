@@ -10,4 +10,9 @@ typedef enum { RG_NUMBER, RG_LENGTH, RG_FREQUENCY, RG_ANGLE, RG_LEVEL } rg_dimen
  * RG_BAD_VALUE: the text says what would be right. *value is finite on success. */
 rg_status rg_take_quantity(double *value, rg_dimension dimension, const char *text, rg_error *err);
 
+/* Its two steps, for a list whose last number may lend its unit: the number with the text of its unit (empty if it has none), and the
+ * unit, if any, put to a number; text is for the message. */
+rg_status rg_split_quantity(double *number, const char **unit_name, rg_dimension dimension, const char *text, rg_error *err);
+rg_status rg_apply_unit(double *value, rg_dimension dimension, const char *unit_name, const char *text, rg_error *err);
+
 #endif
