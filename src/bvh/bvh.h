@@ -37,12 +37,16 @@ void rg_bvh_free(rg_bvh *bvh);
 bool rg_bvh_any(const rg_bvh *bvh, const rg_ray *ray);
 rg_hit rg_bvh_closest(const rg_bvh *bvh, const rg_ray *ray);
 
-/* The same answers for n rays at once, faster when they run together. */
+/* The same answers for n rays, eight at a time that take turns while memory is slow. The order of the rays is free; neighbours in it
+ * that are neighbours in space are faster. */
 void rg_bvh_any_packet(const rg_bvh *bvh, size_t n, const rg_ray ray[], bool hit[]);
 void rg_bvh_closest_packet(const rg_bvh *bvh, size_t n, const rg_ray ray[], rg_hit hit[]);
 
-/* Facets that may reach into the prism: none that does is missed, some that only come near may be named. Writes the first max of
- * them to facet[], in no stated order, each once; returns how many there are. */
+/* Facets that may reach into the prism: none that does is missed, some that only come near may be named. What lies behind the
+ * triangle's plane or only touches the prism does not reach in: the triangle itself, its neighbours on a convex body, those that share
+ * a corner and lean away. Two facets in one plane do, as far as doubles can tell. A triangle that is edge-on to `toward` sweeps out
+ * nothing, and then all that comes near its axis-aligned sweep is named. Writes the first max of them to facet[], in no stated order,
+ * each once; returns how many there are. */
 size_t rg_bvh_in_prism(const rg_bvh *bvh, const rg_prism *prism, size_t max, uint32_t facet[]);
 
 /* Every facet in one leaf, every box around its facets. RG_BAD_INPUT names the first fault. */

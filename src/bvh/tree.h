@@ -1,7 +1,8 @@
 /* tree.h - the tree as it lies in memory, and the kernels that walk it
  *
- * Per facet, of a mesh-like surface: about 95 bytes of blocks and 8 of nodes; while building another 32 of references and up to
- * 37 of unordered nodes, of which about 8 are ever touched.
+ * Per facet of a closed surface (measured: 7.4 facets a block, 22 a node): 87 bytes of blocks and 12 of nodes; while building another 32 of
+ * references and 12 of unordered nodes, for which 37 are reserved. A block keeps its corners: a ray then waits for ten cache lines in a
+ * row instead of twenty-four that are anywhere.
  */
 #ifndef RG_BVH_TREE_H
 #define RG_BVH_TREE_H
