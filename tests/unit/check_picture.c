@@ -1,11 +1,18 @@
 /* check_picture.c - what a picture of a mesh shows: where, how much of each part, which side, and the same from any number of threads */
+#include "plot/mesh_picture.h"
 #include "plot/mesh_view.h"
 #include "run.h"
 #include <math.h>
 #include <omp.h>
+#include <stdio.h>
 #include <string.h>
+#include <unistd.h>
 
 #define PI 3.14159265358979323846
+
+/* The font library keeps its lists until the process ends; a leak check would name them. */
+const char *__lsan_default_suppressions(void);
+const char *__lsan_default_suppressions(void) { return "leak:libfontconfig"; }
 
 enum { SIDE = 240 };
 static double v[4096][3];
@@ -226,6 +233,54 @@ START_TEST(thin_views_are_drawn)        /* a sheet edge-on, a needle from its en
 }
 END_TEST
 
+static unsigned big_endian(const unsigned char b[4]) { return (unsigned)b[0] << 24 | (unsigned)b[1] << 16 | (unsigned)b[2] << 8 | b[3]; }
+
+START_TEST(a_png_of_the_width_asked_for)
+{
+    static const int width[] = {300, 601, 1500};
+    char folder[] = "/tmp/check_picture.XXXXXX", path[64];
+    unsigned char head[24];
+    rg_error err = {""};
+    ck_assert_ptr_nonnull(mkdtemp(folder));
+    snprintf(path, sizeof path, "%s/box.png", folder);
+    start();
+    for (uint32_t i = 0; i < 4; i++) box(i, (vec3){0, 2.0 * i, 0}, 1, 1, 1);
+    rg_mesh *mesh = made();
+    const rg_mesh_picture picture = {0.3, 0.2, width[_i], "a title far too long for any width: \xc3\xa4\xc3\xb6\xc3\xbc \xc3\xa4\xc3\xb6\xc3\xbc "
+                                     "\xc3\xa4\xc3\xb6\xc3\xbc \xc3\xa4\xc3\xb6\xc3\xbc \xc3\xa4\xc3\xb6\xc3\xbc \xc3\xa4\xc3\xb6\xc3\xbc \xc3\xa4\xc3\xb6\xc3\xbc", {"one", NULL}};
+    ck_assert_msg(rg_mesh_picture_write(mesh, &picture, path, &err) == RG_OK, "%s", err.text);
+    FILE *file = fopen(path, "rb");
+    ck_assert_ptr_nonnull(file);
+    ck_assert_uint_eq(fread(head, 1, sizeof head, file), sizeof head);
+    fclose(file);
+    ck_assert_mem_eq(head, "\x89PNG\r\n\x1a\n", 8);      /* ISO/IEC 15948, 5.2 */
+    ck_assert_uint_eq(big_endian(head + 16), (unsigned)width[_i]);
+    ck_assert_uint_gt(big_endian(head + 20), (unsigned)width[_i] / 5);
+    unlink(path);
+    ck_assert_int_eq(rmdir(folder), 0);     /* nothing else was left there */
+    rg_mesh_free(mesh);
+}
+END_TEST
+
+START_TEST(pictures_that_cannot_be_are_refused)
+{
+    rg_error err = {""};
+    start();
+    box(0, (vec3){0, 0, 0}, 1, 1, 1);
+    rg_mesh *mesh = made();
+    rg_mesh_picture picture = {.width_px = 299, .title = "box"};
+    ck_assert_int_eq(rg_mesh_picture_write(mesh, &picture, "/tmp/never.png", &err), RG_BAD_VALUE);
+    picture.width_px = 4001;
+    ck_assert_int_eq(rg_mesh_picture_write(mesh, &picture, "/tmp/never.png", &err), RG_BAD_VALUE);
+    picture.width_px = 400, picture.el_rad = NAN;
+    ck_assert_int_eq(rg_mesh_picture_write(mesh, &picture, "/tmp/never.png", &err), RG_BAD_VALUE);
+    picture.el_rad = 0.0;
+    ck_assert_int_eq(rg_mesh_picture_write(mesh, &picture, "/tmp/no such folder/never.png", &err), RG_SYSTEM);
+    ck_assert_ptr_nonnull(strstr(err.text, "no such folder"));
+    rg_mesh_free(mesh);
+}
+END_TEST
+
 /* CIE lightness of an sRGB colour: IEC 61966-2-1 and CIE 15, as widely published. */
 static double lightness(uint32_t rgb)
 {
@@ -259,6 +314,8 @@ int main(void)
     tcase_add_test(tests, steps_in_depth_and_sharp_edges_are_darker_and_slopes_are_not);
     tcase_add_test(tests, threads_do_not_change_a_pixel);
     tcase_add_test(tests, thin_views_are_drawn);
+    tcase_add_loop_test(tests, a_png_of_the_width_asked_for, 0, 3);
+    tcase_add_test(tests, pictures_that_cannot_be_are_refused);
     tcase_add_test(tests, neighbours_in_the_list_differ_in_grey);
     suite_add_tcase(suite, tests);
     return run_suite(suite);
