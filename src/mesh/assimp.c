@@ -323,14 +323,24 @@ static rg_status say_why(rg_error *err)
     return rg_fail(err, RG_BAD_INPUT, "it cannot be read as a mesh: %s", clean);
 }
 
+static rg_word word_but_remark(rg_text *text)
+{
+    rg_word word = rg_word_anywhere(text);
+    while (word.n && word.at[0] == '#') {
+        rg_next_line(text);
+        word = rg_word_anywhere(text);
+    }
+    return word;
+}
+
 /* Assimp fills memory for as many vertices as an OFF promises before it looks for one. A vertex is three numbers with a blank each. */
 static rg_status check_promise(const rg_file *file, rg_error *err)
 {
     rg_text text = {file->text, file->text + file->n, 1};
-    const rg_word first = rg_word_anywhere(&text);
+    const rg_word first = word_but_remark(&text);
     int64_t n_vertices, n_faces;
     if (first.n < 3 || memcmp(first.at + first.n - 3, "OFF", 3) != 0) return RG_OK;
-    if (!rg_whole_of(&n_vertices, rg_word_anywhere(&text)) || !rg_whole_of(&n_faces, rg_word_anywhere(&text))) return RG_OK;
+    if (!rg_whole_of(&n_vertices, word_but_remark(&text)) || !rg_whole_of(&n_faces, word_but_remark(&text))) return RG_OK;
     if (n_vertices < 0 || n_faces < 0 || (uint64_t)n_vertices > file->n / 6 || (uint64_t)n_faces > file->n / 2)
         return rg_fail(err, RG_BAD_INPUT, "its head promises %lld vertices and %lld faces, which its %zu bytes cannot hold",
                        (long long)n_vertices, (long long)n_faces, file->n);

@@ -86,7 +86,7 @@ static rg_status read_facets(rg_soup *soup, rg_origin *origin, const rg_file *fi
     if (named_stl && file->n >= 5 && strncasecmp(file->text, "solid", 5) == 0) return rg_read_stl(soup, file, err);
     const bool own_name = named_obj || named_stl || named_ply;
     rg_error first = {""};
-    rg_status status = own_name ? RG_BAD_INPUT : rg_read_assimp(soup, origin, file, false, &first);
+    rg_status status = own_name ? RG_BAD_INPUT : rg_read_apart(soup, origin, file, false, &first);
     if (status != RG_BAD_INPUT) {
         if (status && err) *err = first;
         return status;
@@ -97,7 +97,7 @@ static rg_status read_facets(rg_soup *soup, rg_origin *origin, const rg_file *fi
         strcpy(origin->format, "OBJ");
         return rg_read_obj(soup, file, err);
     }
-    status = rg_read_assimp(soup, origin, file, true, err);
+    status = rg_read_apart(soup, origin, file, true, err);
     if (status != RG_BAD_INPUT) return status;
     rg_soup_free(soup);
     if (named_obj) return rg_read_obj(soup, file, err);
@@ -154,7 +154,7 @@ rg_status rg_mesh_read(rg_mesh **out, const char *path, const rg_mesh_frame *fra
     }
     if (!status) status = rg_mesh_build(out, &soup, &turn, &report, &why);
     rg_soup_free(&soup);
-    if (status == RG_BAD_INPUT || status == RG_NO_MEMORY) put_name_before(&why, path);
+    if (status != RG_OK && status != RG_BAD_VALUE) put_name_before(&why, path);
     if (status && err) *err = why;
     return status;
 }

@@ -26,7 +26,10 @@ rg_status rg_read_ply(rg_soup *soup, const rg_file *file, rg_error *err);
 rg_status rg_read_stl(rg_soup *soup, const rg_file *file, rg_error *err);
 rg_status rg_read_obj(rg_soup *soup, const rg_file *file, rg_error *err);
 
-/* Everything else that Assimp knows. by_content: forget the file's ending. */
+/* Everything else that Assimp knows. by_content: forget the file's ending. A damaged file may break the process. */
 rg_status rg_read_assimp(rg_soup *soup, rg_origin *origin, const rg_file *file, bool by_content, rg_error *err);
+
+/* The same, in a process of its own, which may break. RG_SYSTEM (no process to be had), and as above. */
+rg_status rg_read_apart(rg_soup *soup, rg_origin *origin, const rg_file *file, bool by_content, rg_error *err);
 
 #endif

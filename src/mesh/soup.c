@@ -67,8 +67,8 @@ static size_t utf8_length(const unsigned char *s, size_t n)
 
 static bool blank(char c) { return c == ' ' || c == '\t' || c == '\r' || c == '\n'; }
 
-/* Returns the length without the final 0. */
-static size_t clean_name(char out[RG_NAME_MAX], const char *name, size_t n)
+/* Fits size bytes with a final 0; returns the length without. */
+static size_t clean_name(char out[], size_t size, const char *name, size_t n)
 {
     while (n && blank(name[0])) name++, n--;
     while (n && blank(name[n - 1])) n--;
@@ -76,12 +76,13 @@ static size_t clean_name(char out[RG_NAME_MAX], const char *name, size_t n)
     for (size_t i = 0; i < n;) {
         const unsigned char *s = (const unsigned char *)name + i;
         const size_t length = utf8_length(s, n - i), used = length ? length : 1;
-        if (m + used >= RG_NAME_MAX) break;
+        if (m + used >= size) break;
         const bool c1 = length == 2 && s[0] == 0xc2 && s[1] < 0xa0;     /* control characters again, from 80 to 9f */
         if (length == 0 || s[0] < 0x20 || s[0] == 0x7f || c1) out[m++] = '_';
         else memcpy(out + m, s, length), m += length;
         i += used;
     }
+    while (m && blank(out[m - 1])) m--;     /* a cut can bare one */
     out[m] = 0;
     return m;
 }
@@ -134,16 +135,15 @@ static rg_status part_named(rg_soup *soup, uint32_t *part, const char *name, rg_
 rg_status rg_soup_part(rg_soup *soup, uint32_t *part, const char *name, size_t n, rg_error *err)
 {
     char clean[RG_NAME_MAX];
-    return part_named(soup, part, clean_name(clean, name, n) ? clean : "mesh", err);
+    return part_named(soup, part, clean_name(clean, sizeof clean, name, n) ? clean : "mesh", err);
 }
 
 rg_status rg_soup_part_of(rg_soup *soup, uint32_t *part, const char *group, size_t n_group, const char *material, size_t n_material,
                           rg_error *err)
 {
-    char name[2 * RG_NAME_MAX];
-    size_t n = clean_name(name, group, n_group);
-    char tail[RG_NAME_MAX];
-    const size_t n_tail = clean_name(tail, material, n_material);
+    char name[RG_NAME_MAX], tail[RG_NAME_MAX / 2];
+    size_t n = clean_name(name, sizeof name / 2, group, n_group);
+    const size_t n_tail = clean_name(tail, sizeof tail, material, n_material);
     if (n && n_tail) name[n++] = '/';
     memcpy(name + n, tail, n_tail + 1);
     return part_named(soup, part, n + n_tail ? name : "mesh", err);

@@ -10,7 +10,7 @@
 #define RG_FACETS_MAX ((size_t)1 << 31)
 #define RG_VERTICES_MAX ((size_t)UINT32_MAX - 2)
 
-enum { RG_NAME_MAX = 160 };     /* bytes of a part's name, with its 0; longer ones are cut */
+enum { RG_NAME_MAX = 256 };     /* bytes of a part's name, with its 0; longer ones are cut */
 
 typedef struct {
     size_t n_vertices, vertices_held;
