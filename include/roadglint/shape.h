@@ -49,4 +49,7 @@ RG_API rg_status rg_shape_mesh(rg_mesh **out, const rg_shape *shape, rg_error *e
  *  RG_BAD_VALUE (another ending; facets too small for single precision that far from zero), RG_SYSTEM, RG_NO_MEMORY. */
 RG_API rg_status rg_mesh_write(const rg_mesh *mesh, const char *path, rg_error *err);
 
+/** RG_BAD_VALUE unless the ending of path is one that rg_mesh_write knows: to be asked before long work. */
+RG_API rg_status rg_mesh_can_write(const char *path, rg_error *err);
+
 #endif

@@ -154,20 +154,31 @@ static rg_status write_ply(const rg_mesh *mesh, FILE *out, rg_error *err)
     return RG_OK;
 }
 
+typedef rg_status write_fn(const rg_mesh *mesh, FILE *out, rg_error *err);
+
+static write_fn *format_of(const char *path)
+{
+    static const struct { const char *ending; write_fn *write; } formats[] = {{".stl", write_stl}, {".obj", write_obj}, {".ply", write_ply}};
+    const char *ending = strrchr(path, '.');
+    for (size_t i = 0; ending && i < sizeof formats / sizeof formats[0]; i++)
+        if (strcasecmp(ending, formats[i].ending) == 0) return formats[i].write;
+    return NULL;
+}
+
+rg_status rg_mesh_can_write(const char *path, rg_error *err)
+{
+    if (format_of(path)) return RG_OK;
+    return rg_fail(err, RG_BAD_VALUE, "%s: a mesh is written as .stl, .obj or .ply: end the name with one of them", path);
+}
+
 rg_status rg_mesh_write(const rg_mesh *mesh, const char *path, rg_error *err)
 {
-    static const struct { const char *ending; rg_status (*write)(const rg_mesh *, FILE *, rg_error *); } formats[] = {
-        {".stl", write_stl}, {".obj", write_obj}, {".ply", write_ply}};
-    const char *ending = strrchr(path, '.');
-    for (size_t i = 0; ending && i < sizeof formats / sizeof formats[0]; i++) {
-        if (strcasecmp(ending, formats[i].ending) != 0) continue;
-        rg_out_file *file = NULL;
-        rg_status status = rg_out_file_open(&file, path, err);
-        if (status) return status;
-        status = formats[i].write(mesh, rg_out_file_stream(file), err);
-        if (!status) return rg_out_file_keep(file, err);
-        rg_out_file_drop(file);
-        return status;
-    }
-    return rg_fail(err, RG_BAD_VALUE, "%s: a mesh is written as .stl, .obj or .ply: end the name with one of them", path);
+    rg_out_file *file = NULL;
+    rg_status status = rg_mesh_can_write(path, err);
+    if (!status) status = rg_out_file_open(&file, path, err);
+    if (status) return status;
+    status = format_of(path)(mesh, rg_out_file_stream(file), err);
+    if (!status) return rg_out_file_keep(file, err);
+    rg_out_file_drop(file);
+    return status;
 }
