@@ -7,12 +7,13 @@
 static void find_middle(rg_bvh *bvh)
 {
     double low[3] = {INFINITY, INFINITY, INFINITY}, high[3] = {-INFINITY, -INFINITY, -INFINITY};
+#pragma omp parallel for reduction(min : low) reduction(max : high)     /* of which no order shows */
     for (size_t i = 0; i < bvh->n_facets; i++)
         for (int c = 0; c < 3; c++)
             for (int axis = 0; axis < 3; axis++) {
                 const double x = bvh->vertex_m[bvh->facet[i][c]][axis];
-                low[axis] = fmin(low[axis], x);
-                high[axis] = fmax(high[axis], x);
+                low[axis] = x < low[axis] ? x : low[axis];
+                high[axis] = x > high[axis] ? x : high[axis];
             }
     for (int axis = 0; axis < 3 && bvh->n_facets; axis++) {
         bvh->middle_m[axis] = 0.5 * low[axis] + 0.5 * high[axis];
