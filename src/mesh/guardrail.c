@@ -20,7 +20,7 @@
 #define INNER_BEND_M 0.024      /* [M] */
 #define FLANK_DEG 55.0          /* from the plane of the crests [M] */
 #define CRESTS_APART_M 0.194    /* [M] */
-#define LIP_M 0.008             /* straight part of the lips, which point straight back; invented */
+#define LIP_M 0.005             /* straight part of the lips, which point straight back and stay clear of the blockouts; invented */
 #define PIECE_M 3.81            /* effective length, 12.5 ft [S] */
 #define HALF_LAP_M 0.16         /* a piece is 4.13 over all [M] */
 #define LAP_GAP_M 0.0002        /* so that lapped sheets do not share a surface; invented */

@@ -46,6 +46,13 @@ static void put_rest(record *r) { fwrite(r->bytes, 1, r->n, r->out); }
 /* Where the user put it. */
 static vec3 place(const rg_mesh *mesh, size_t vertex) { return vec3_add(vec3_from(mesh->origin_m), vec3_from(mesh->vertex_m[vertex])); }
 
+/* Names are lines in both formats that have them; a caller's name may hold what would break one. */
+static void put_name(FILE *out, const char *name)
+{
+    for (; *name; name++) fputc((unsigned char)*name < 0x20 || *name == 0x7f ? '_' : *name, out);
+    fputc('\n', out);
+}
+
 /* --- STL: single precision, no shared vertices, no parts --- */
 
 static vec3 in_single(vec3 a) { return (vec3){(float)a.x, (float)a.y, (float)a.z}; }
@@ -117,7 +124,8 @@ static rg_status write_obj(const rg_mesh *mesh, FILE *out, rg_error *err)
     }
     for (size_t part = 0; part < mesh->n_parts; part++) {
         if (mesh->part_first[part] == mesh->part_first[part + 1]) continue;
-        fprintf(out, "g %s\n", mesh->part_name[part]);
+        fputs("g ", out);
+        put_name(out, mesh->part_name[part]);
         for (size_t f = mesh->part_first[part]; f < mesh->part_first[part + 1]; f++)
             fprintf(out, "f %u %u %u\n", mesh->facet[f][0] + 1u, mesh->facet[f][1] + 1u, mesh->facet[f][2] + 1u);
     }
@@ -135,7 +143,10 @@ static rg_status write_ply(const rg_mesh *mesh, FILE *out, rg_error *err)
     const bool few_parts = mesh->n_parts <= 256;
     record r = {.out = out};
     fputs("ply\nformat binary_little_endian 1.0\ncomment by roadglint " ROADGLINT_VERSION ", metres, x forward, y left, z up\n", out);
-    for (size_t part = 0; part < mesh->n_parts; part++) fprintf(out, "comment part %zu %s\n", part, mesh->part_name[part]);
+    for (size_t part = 0; part < mesh->n_parts; part++) {
+        fprintf(out, "comment part %zu ", part);
+        put_name(out, mesh->part_name[part]);
+    }
     fprintf(out, "element vertex %zu\nproperty double x\nproperty double y\nproperty double z\n", mesh->n_vertices);
     fprintf(out, "element face %zu\nproperty list uchar %s vertex_indices\nproperty %s part\nend_header\n", mesh->n_facets, index,
             few_parts ? "uchar" : "int");

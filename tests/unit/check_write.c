@@ -70,7 +70,7 @@ static rg_mesh *awkward_mesh(double away_m)
     const double third = 1.0 / 3.0;
     const double v[4][3] = {{away_m + 0.1, third, 1e-3 * third}, {away_m + 1.1, -third, 0.0}, {away_m + third, 0.7, 0.2}, {away_m, 0.0, 1.0 - 1e-9}};
     static const uint32_t f[4][3] = {{0, 1, 2}, {0, 3, 1}, {1, 3, 2}, {0, 2, 3}}, part[4] = {0, 2, 2, 0};
-    static const char *const name[] = {"front left", "empty", "grille"};
+    static const char *const name[] = {"front left", "empty", "grille\nv 1 2 3"};
     rg_mesh *mesh = NULL;
     rg_error err = {""};
     ck_assert_msg(rg_mesh_from_arrays(&mesh, 4, v, 4, f, part, 3, name, &err) == RG_OK, "%s", err.text);
@@ -160,7 +160,7 @@ START_TEST(obj_names_parts_and_keeps_doubles)
     write_to(mesh, "a.obj");
     slurp("a.obj", text, sizeof text);
     ck_assert_ptr_nonnull(strstr(text, "\ng front left\nf "));
-    ck_assert_ptr_nonnull(strstr(text, "\ng grille\nf "));
+    ck_assert_ptr_nonnull(strstr(text, "\ng grille_v 1 2 3\nf "));
     ck_assert_ptr_null(strstr(text, "empty"));
     ck_assert_int_eq(text[0], '#');
     size_t v = 0;
@@ -184,7 +184,7 @@ START_TEST(ply_has_its_head_and_its_parts)
     write_to(mesh, "a.ply");
     const size_t n = slurp("a.ply", bytes, sizeof bytes);
     ck_assert_int_eq(strncmp(bytes, "ply\nformat binary_little_endian 1.0\n", 36), 0);
-    ck_assert_ptr_nonnull(strstr(bytes, "comment part 0 front left\ncomment part 1 empty\ncomment part 2 grille\n"));
+    ck_assert_ptr_nonnull(strstr(bytes, "comment part 0 front left\ncomment part 1 empty\ncomment part 2 grille_v 1 2 3\n"));
     ck_assert_ptr_nonnull(strstr(bytes, "element vertex 4\nproperty double x\nproperty double y\nproperty double z\nelement face 4\n"
                                         "property list uchar int vertex_indices\nproperty uchar part\nend_header\n"));
     const char *body = strstr(bytes, "end_header\n") + 11;
