@@ -7,6 +7,7 @@
 #include <errno.h>
 #include <fcntl.h>
 #include <signal.h>
+#include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
 #include <sys/prctl.h>
@@ -14,7 +15,9 @@
 #include <sys/wait.h>
 #include <unistd.h>
 
-#define CPU_LIMIT_S 900     /* of a reader that never ends */
+#define CPU_LIMIT_S 900                             /* of a reader that never ends */
+#define MEMORY_BASE ((rlim_t)4 << 30)               /* bytes on top of what the process has already, */
+#define MEMORY_PER_BYTE ((rlim_t)64)                /* and for each byte of the file */
 
 typedef struct {
     rg_status status;
@@ -46,6 +49,22 @@ static bool receive_all(int fd, void *to, size_t n)
         n -= (size_t)got;
     }
     return true;
+}
+
+/* A count that lies makes some readers fill all there is. */
+static void limit_memory(size_t file_bytes)
+{
+    unsigned long pages = 0;
+    FILE *statm = fopen("/proc/self/statm", "r");
+    if (statm && fscanf(statm, "%lu", &pages) == 1) {
+        struct rlimit limit;
+        const rlim_t most = pages * (rlim_t)sysconf(_SC_PAGESIZE) + MEMORY_BASE + MEMORY_PER_BYTE * file_bytes;
+        if (getrlimit(RLIMIT_AS, &limit) == 0 && most < limit.rlim_cur) {
+            limit.rlim_cur = most;
+            setrlimit(RLIMIT_AS, &limit);
+        }
+    }
+    if (statm) fclose(statm);
 }
 
 /* Silent, first to go when memory runs out, and gone with its parent. */
@@ -129,6 +148,7 @@ rg_status rg_read_apart(rg_soup *soup, rg_origin *origin, const rg_file *file, b
     const pid_t child = fork();
     if (child == 0) {
         settle_in_child();
+        limit_memory(file->n);
         read_and_send(end[1], file, by_content);
         _exit(0);
     }

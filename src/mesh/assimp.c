@@ -16,6 +16,7 @@
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
+#include <sys/resource.h>
 #include <sys/stat.h>
 #include <unistd.h>
 
@@ -70,6 +71,12 @@ static bool read_companion(open_file *f, const char *name)
     if (fd < 0) return false;
     bool good = fstat(fd, &info) == 0 && S_ISREG(info.st_mode) && (f->owned = malloc((size_t)info.st_size + 1)) != NULL;
     f->text = f->owned;
+    struct rlimit limit;        /* where memory is bounded by the size of the mesh file, this one adds to it */
+    if (good && getrlimit(RLIMIT_AS, &limit) == 0 && limit.rlim_cur != RLIM_INFINITY) {
+        const rlim_t wider = limit.rlim_cur + 64 * (rlim_t)info.st_size;
+        limit.rlim_cur = wider < limit.rlim_max ? wider : limit.rlim_max;
+        setrlimit(RLIMIT_AS, &limit);
+    }
     while (good && f->n < (size_t)info.st_size) {
         const ssize_t n = read(fd, f->owned + f->n, (size_t)info.st_size - f->n);
         if (n <= 0) good = false;
@@ -316,6 +323,8 @@ static rg_status say_why(rg_error *err)
     const char *said = aiGetErrorString();
     if (!said || !said[0] || strstr(said, "No suitable reader"))
         return rg_fail(err, RG_BAD_INPUT, "this is no mesh format that is known here");
+    if (strstr(said, "bad_alloc") || strstr(said, "length_error"))
+        return rg_fail(err, RG_BAD_INPUT, "its reader asks for more memory than there is: the file is damaged or too large for this machine");
     char clean[201];
     size_t n = 0;
     for (; said[n] && n < sizeof clean - 1; n++) clean[n] = said[n] >= ' ' && said[n] < 0x7f ? said[n] : ' ';
