@@ -65,7 +65,7 @@ static rg_status draw(const inspect_job *job, const char *path, const rg_mesh *m
 {
     const double az_deg = isnan(job->az_deg) ? 35.0 : job->az_deg, el_deg = isnan(job->el_deg) ? 20.0 : job->el_deg;
     const char *const slash = strrchr(path, '/');
-    char size[96], note[2][160];
+    char size[128], note[2][192];
     rg_size_text(size, rg_mesh_get_report(mesh));
     snprintf(note[0], sizeof note[0], "%s (length x width x height), %zu facets", size, rg_mesh_n_facets(mesh));
     snprintf(note[1], sizeof note[1], "seen from azimuth %.6g, elevation %.6g degrees", az_deg + 0.0, el_deg + 0.0);

@@ -27,12 +27,19 @@ static double largest_m(const rg_mesh_report *r)
     return fmax(size_m[0], fmax(size_m[1], size_m[2]));
 }
 
-void rg_size_text(char text[96], const rg_mesh_report *report)
+/* All three in one unit, so that they can be compared at a glance. */
+static void size_words(rg_words words[3], const rg_mesh_report *r)
 {
     double size_m[3];
-    rg_words x, y, z;
-    extents(size_m, report);
-    snprintf(text, 96, "%s x %s x %s", rg_length_words(&x, size_m[0]), rg_length_words(&y, size_m[1]), rg_length_words(&z, size_m[2]));
+    extents(size_m, r);
+    for (int i = 0; i < 3; i++) rg_length_words_like(&words[i], size_m[i], largest_m(r));
+}
+
+void rg_size_text(char text[128], const rg_mesh_report *report)
+{
+    rg_words words[3];
+    size_words(words, report);
+    snprintf(text, 128, "%.30s x %.30s x %.30s", words[0].text, words[1].text, words[2].text);
 }
 
 static void warn(rg_inspection *i, const char *format, ...) RG_PRINTF(2, 3);
@@ -124,13 +131,11 @@ void rg_inspection_free(rg_inspection *inspection)
 
 static void print_mesh(FILE *out, const rg_inspection *i, const rg_mesh_report *r)
 {
-    double size_m[3];
-    rg_words x, y, z;
-    extents(size_m, r);
+    rg_words size[3];
+    size_words(size, r);
     fprintf(out, "file          %s\n", i->path);
     fprintf(out, "format        %s; %s\n", r->format, r->assumed);
-    fprintf(out, "size          %s long (x), %s wide (y), %s high (z)\n", rg_length_words(&x, size_m[0]), rg_length_words(&y, size_m[1]),
-            rg_length_words(&z, size_m[2]));
+    fprintf(out, "size          %s long (x), %s wide (y), %s high (z)\n", size[0].text, size[1].text, size[2].text);
     fprintf(out, "box           x %.6g to %.6g, y %.6g to %.6g, z %.6g to %.6g m\n", r->low_m[0] + 0.0, r->high_m[0] + 0.0, r->low_m[1] + 0.0,
             r->high_m[1] + 0.0, r->low_m[2] + 0.0, r->high_m[2] + 0.0);
     fprintf(out, "facets        %zu, with %zu vertices, %.4g m2\n", rg_mesh_n_facets(i->mesh), rg_mesh_n_vertices(i->mesh), r->area_m2);

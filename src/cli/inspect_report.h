@@ -27,6 +27,6 @@ rg_status rg_inspection_print(FILE *out, const rg_inspection *inspection, rg_err
 rg_status rg_inspection_json(FILE *out, const rg_inspection *inspection, rg_error *err);
 
 /* "4.5 m x 1.8 m x 1.45 m", for a heading. */
-void rg_size_text(char text[96], const rg_mesh_report *report);
+void rg_size_text(char text[128], const rg_mesh_report *report);
 
 #endif
