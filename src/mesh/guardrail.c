@@ -123,31 +123,31 @@ static double post_y(const rg_shape *shape, double i)
     return -0.5 * length_m + POST_SPACING_M * (i + 0.5);
 }
 
-/* A bolt's head: a cap of a sphere on a short shank that ends within the sheet. */
+/* A bolt's head: a cap of a sphere, and the disc that closes it within the sheet. */
 typedef struct {
-    double sphere_m, half_angle, n_rows;
+    double sphere_m, half_angle, rim_m;
     rg_disc_plan cap, foot;
     double n_facets;
 } head_plan;
 
 static head_plan plan_head(const rg_shape *shape)
 {
-    const double a = 0.5 * HEAD_WIDE_M, cell_m = cell_for(shape->edge_m);
+    const double a = 0.5 * HEAD_WIDE_M, cell_m = cell_for(shape->edge_m), tall_m = HEAD_TALL_M + 0.5 * SHEET_M;
     head_plan head = {.sphere_m = (a * a + HEAD_TALL_M * HEAD_TALL_M) / (2.0 * HEAD_TALL_M)};
-    head.half_angle = rg_atan2(a, head.sphere_m - HEAD_TALL_M);
+    head.rim_m = sqrt(tall_m * (2.0 * head.sphere_m - tall_m));
+    head.half_angle = rg_atan2(head.rim_m, head.sphere_m - tall_m);
     const double arc_m = head.sphere_m * head.half_angle;
     /* A triangle of sides q, q and its diagonal has the circumradius q/sqrt 2, and the sagitta q^2/(4r). */
     double step_m = arc_m / 2.0;
     if (shape->sagitta_m > 0.0) step_m = fmin(step_m, 2.0 * sqrt(shape->sagitta_m * head.sphere_m));
     if (cell_m > 0.0) step_m = fmin(step_m, cell_m);
-    const rg_circle rim = rg_circle_of(a, shape->sagitta_m, step_m);
-    const double rings = rg_pieces(arc_m, step_m), foot_rings = cell_m > 0.0 ? rg_pieces(a, cell_m) : 1.0;
-    head.n_rows = rg_pieces(0.5 * SHEET_M, cell_m);
-    head.n_facets = 4.0 * rg_disc_n_facets(rim.n, rings, step_m / arc_m) + 4.0 * rg_disc_n_facets(rim.n, foot_rings, cell_m / a) +
-                    2.0 * rim.n * head.n_rows;
+    const rg_circle rim = rg_circle_of(head.rim_m, shape->sagitta_m, step_m);
+    const double rings = rg_pieces(arc_m, step_m), foot_rings = rg_pieces(head.rim_m, cell_m);
+    const double foot_step = foot_rings > 1.0 ? cell_m / head.rim_m : 1.0;
+    head.n_facets = 4.0 * rg_disc_n_facets(rim.n, rings, step_m / arc_m) + 4.0 * rg_disc_n_facets(rim.n, foot_rings, foot_step);
     if (!(head.n_facets < 1e9)) return head;
     head.cap = (rg_disc_plan){(size_t)rim.n, (size_t)rings, step_m / arc_m};
-    head.foot = (rg_disc_plan){(size_t)rim.n, (size_t)foot_rings, foot_rings > 1.0 ? cell_m / a : 1.0};
+    head.foot = (rg_disc_plan){(size_t)rim.n, (size_t)foot_rings, foot_step};
     return head;
 }
 
@@ -340,27 +340,20 @@ static vec3 point_of_cap(const void *of, double u, double v)
     return head_point(h, wider * u, wider * v, r * (c - rim_c));
 }
 
-static vec3 point_of_shank(const void *of, double u, double v)
-{
-    double c, s;
-    rg_cis_pi(2.0 * u, &c, &s);
-    return head_point(of, 0.5 * HEAD_WIDE_M * c, 0.5 * HEAD_WIDE_M * s, 0.5 * SHEET_M * (v - 1.0));
-}
-
 static vec3 point_of_foot(const void *of, double u, double v)
 {
-    return head_point(of, 0.5 * HEAD_WIDE_M * v, 0.5 * HEAD_WIDE_M * u, -0.5 * SHEET_M);
+    const head *h = of;
+    return head_point(h, h->plan->rim_m * v, h->plan->rim_m * u, 0.0);
 }
 
-/* A head on the sheet's front: x and z of the sheet's middle, angle of the section there. */
+/* A head on the sheet's front, closed in the sheet's middle, whose x and z are given with the angle of the section there. */
 static rg_status add_head(rg_soup *soup, uint32_t part, const head_plan *plan, double x, double y, double z, double deg, rg_error *err)
 {
     double tx, tz;
     along(deg, &tx, &tz);
     const vec3 axis = {tz, 0.0, -tx}, up = {tx, 0.0, tz}, middle = {x - (DEEP_M - 0.5 * SHEET_M), y, z + RAIL_MIDDLE_M};
-    const head h = {plan, vec3_add(middle, vec3_scale(axis, 0.5 * SHEET_M)), axis, {0.0, 1.0, 0.0}, up};
-    rg_status status = rg_patch_disc(soup, part, 0, 4, &plan->cap, point_of_cap, &h, err);
-    if (!status) status = rg_patch_grid(soup, part, plan->cap.n_rim, (size_t)plan->n_rows, point_of_shank, &h, err);
+    const head h = {plan, middle, axis, {0.0, 1.0, 0.0}, up};
+    const rg_status status = rg_patch_disc(soup, part, 0, 4, &plan->cap, point_of_cap, &h, err);
     return status ? status : rg_patch_disc(soup, part, 0, 4, &plan->foot, point_of_foot, &h, err);
 }
 
