@@ -19,7 +19,7 @@ extern const rg_polygon rg_whole_facet;
  * The face is held against every facet that reaches into its shadow prism, so no occluder is too small to be seen. Where few do, the
  * shadow is cut out exactly, as convex polygons; where many do, the part is halved until few do, or until a piece is no longer than
  * grain_m, which its middle then decides as a whole. The facets of a closed shell occlude by the side that faces the viewer, those of a
- * sheet by both. Of two facets in one plane (nearer than the welding tolerance) the one of the lower index hides the other.
+ * sheet by both. Of two facets in one plane (nearer than the welding tolerance) one hides the other.
  *
  *    horizon    NULL: the viewer is far away
  *    grain_m    longest side of a piece that is not cut any further; a fraction of the wavelength

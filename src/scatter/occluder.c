@@ -41,6 +41,13 @@ static void heights(const rg_face *face, const rg_face *other, double height_m[3
 static double lowest(const double x[3]) { return fmin(x[0], fmin(x[1], x[2])); }
 static double highest(const double x[3]) { return fmax(x[0], fmax(x[1], x[2])); }
 
+/* Of two faces in one plane, is other the one before? Seen the other way round the heights change places, so just one of the two is. */
+static bool is_before(const rg_face *face, const rg_face *other, const double over_face[3], const double over_other[3])
+{
+    const double lead = (over_face[0] + over_face[1] + over_face[2]) - (over_other[0] + over_other[1] + over_other[2]);
+    return lead != 0.0 ? lead > 0.0 : other->index < face->index;
+}
+
 /* Adds to region what the horizon leaves of other: along the line of sight over each corner of face, how far other lies within it. */
 static bool keep_within(const rg_horizon *horizon, rg_region *region, const rg_face *face, const rg_face *other, const double over_other[3])
 {
@@ -74,7 +81,7 @@ bool rg_occluder_region(rg_region *region, const rg_face *face, const rg_face *o
     heights(other, face, over_other);
     const bool same_plane = (highest(over_face) <= same_m && lowest(over_face) >= -same_m) ||
                             (highest(over_other) <= same_m && lowest(over_other) >= -same_m);
-    if (same_plane && other->index > face->index) return false;
+    if (same_plane && !is_before(face, other, over_face, over_other)) return false;
     if (!same_plane && (highest(over_face) <= 0.0 || lowest(over_other) >= 0.0)) return false;
 
     region->n = 3;
