@@ -117,6 +117,22 @@ START_TEST(a_gear_and_a_spiral_are_covered)
 }
 END_TEST
 
+/* All left turns, yet twice round, as a limacon's inner loop is: a fan would lay triangles with their backs up. */
+START_TEST(twice_round_is_not_convex)
+{
+    n_corners = 0;
+    for (int i = 0; i < 24; i++) corner_at((0.5 + cos(2 * M_PI * i / 24)) * cos(2 * M_PI * i / 24), (0.5 + cos(2 * M_PI * i / 24)) * sin(2 * M_PI * i / 24));
+    rg_soup soup = {0};
+    rg_error err = {""};
+    ck_assert_int_eq(cut(&soup, &err), RG_OK);
+    size_t n_backward = 0;
+    for (size_t f = 0; f < soup.n_facets; f++) n_backward += facet_area(&soup, f, 2) < -1e-15;
+    ck_assert_uint_eq(soup.n_facets, 22);
+    ck_assert_uint_eq(n_backward, 0);
+    rg_soup_free(&soup);
+}
+END_TEST
+
 /* Convex: at once. A comb of as many teeth as fit: either way it must not take long; 10 s leave room for a slow machine with
  * sanitizers. */
 START_TEST(fifty_thousand_corners_take_no_time)
@@ -166,6 +182,7 @@ int main(void)
     tcase_add_test(tests, corners_on_a_straight_side_make_no_empty_triangle);
     tcase_add_test(tests, a_hole_joined_by_a_bridge_stays_open);
     tcase_add_test(tests, a_gear_and_a_spiral_are_covered);
+    tcase_add_test(tests, twice_round_is_not_convex);
     tcase_add_test(tests, fifty_thousand_corners_take_no_time);
     tcase_add_loop_test(tests, nonsense_comes_to_an_end, 0, 120);
     suite_add_tcase(suite, tests);
