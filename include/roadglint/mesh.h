@@ -48,7 +48,8 @@ typedef struct {
  *    frame   may be NULL: all defaults
  *
  *  RG_BAD_INPUT (no such file, no mesh in it, coordinates that are not finite or absurd, indices out of range, no facet
- *  left: the text names the cause), RG_BAD_VALUE (up and front along one axis), RG_NO_MEMORY.
+ *  left: the text names the cause), RG_BAD_VALUE (up and front along one axis), RG_NO_MEMORY, RG_SYSTEM (no process for
+ *  the import to run in).
  */
 RG_API rg_status rg_mesh_read(rg_mesh **out, const char *path, const rg_mesh_frame *frame, rg_error *err);
 

@@ -60,7 +60,8 @@ static void sweep(record *r, const rg_scene *scene, int n_threads, size_t n_az)
     static const double el_deg[N_EL] = {0.0, 12.5}, freq_hz[N_FREQ] = {76e9, 24.125e9, 81e9};
     double az_deg[N_AZ];
     for (int i = 0; i < N_AZ; i++) az_deg[i] = 17.0 * i - 40.0;
-    const rg_sweep_plan plan = {N_EL, n_az, N_FREQ, el_deg, az_deg, freq_hz, true, n_threads};
+    const rg_sweep_plan plan = {.n_el = N_EL, .n_az = n_az, .n_freq = N_FREQ, .el_deg = el_deg, .az_deg = az_deg, .freq_hz = freq_hz, .parts = true,
+                                .n_threads = n_threads, .mechanisms = RG_SURFACE | RG_EDGE | RG_BOUNCE};
     rg_error err;
     *r = (record){0};
     ck_assert_msg(rg_sweep(scene, &plan, keep, r, NULL, &err) == RG_OK, "%s", err.text);
@@ -102,7 +103,7 @@ START_TEST(order_and_parts)
             const double complex(*s)[RG_N_POL] = (const double complex(*)[RG_N_POL])(r.s_m + i * 4 * N_FREQ);
             const double complex parts = s[N_FREQ + f][RG_HH] + s[2 * N_FREQ + f][RG_HH] + s[3 * N_FREQ + f][RG_HH];
             ck_assert(cabs(s[f][RG_HH] - parts) <= 1e-12 * cabs(s[f][RG_HH]) + 1e-15);
-            ck_assert(s[f][RG_HH] == s[f][RG_VV] && s[f][RG_HV] == 0.0 && s[f][RG_VH] == 0.0);
+            ck_assert(s[f][RG_HV] == s[f][RG_VH]);
         }
     }
     rg_scene_free(scene);
@@ -136,7 +137,7 @@ START_TEST(refusals_and_stops)
     const double zero = 0.0, bad = NAN, f = 77e9;
     volatile sig_atomic_t stop = 1;
     ck_assert(rg_scene_new(&scene, mesh, NULL) == RG_OK);
-    rg_sweep_plan plan = {1, 1, 1, &zero, &zero, &f, false, 1};
+    rg_sweep_plan plan = {.n_el = 1, .n_az = 1, .n_freq = 1, .el_deg = &zero, .az_deg = &zero, .freq_hz = &f, .n_threads = 1};
     r = (record){.stop_at = 1};
     ck_assert(rg_sweep(scene, &plan, keep, &r, NULL, &err) == RG_SYSTEM);
     ck_assert_str_eq(err.text, "enough");
