@@ -40,6 +40,6 @@ if [ -n "$alien" ]; then
 fi
 [ "$(nm -D --defined-only "$lib/libroadglint.so" | grep -c ' T rg_')" -ge 20 ]
 # Every declared function is there, and no other.
-cat "$source"/include/roadglint/*.h | grep -o 'RG_API [^(]*(' | sed 's/.*[ *]\(rg_[a-z_0-9]*\)($/\1/' | sort -u >"$root/declared"
+grep -hv "^#" "$source"/include/roadglint/*.h | grep -o 'RG_API [^(]*(' | sed 's/.*[ *]\(rg_[a-z_0-9]*\)($/\1/' | sort -u >"$root/declared"
 nm -D --defined-only "$lib/libroadglint.so" | awk '$2 == "T" && $3 ~ /^rg_/ {print $3}' | sort -u >"$root/exported"
 diff -u "$root/declared" "$root/exported"

@@ -5,6 +5,7 @@
 #include <math.h>
 #include <string.h>
 
+static const unsigned all = RG_SURFACE | RG_EDGE | RG_BOUNCE;
 enum { N_AZ = 13, N_EL = 2, N_FREQ = 3, ROOM = N_AZ * N_EL * N_FREQ * 4 };
 
 typedef struct { size_t n; double az_deg[N_AZ * N_EL], el_deg[N_AZ * N_EL]; double complex s_m[ROOM][RG_N_POL]; size_t n_s; size_t stop_at; } record;
@@ -55,13 +56,13 @@ static rg_mesh *ball_and_plate(void)
     return mesh;
 }
 
-static void sweep(record *r, const rg_scene *scene, int n_threads, size_t n_az)
+static void sweep(record *r, const rg_scene *scene, unsigned mechanisms, int n_threads, size_t n_az)
 {
     static const double el_deg[N_EL] = {0.0, 12.5}, freq_hz[N_FREQ] = {76e9, 24.125e9, 81e9};
     double az_deg[N_AZ];
     for (int i = 0; i < N_AZ; i++) az_deg[i] = 17.0 * i - 40.0;
     const rg_sweep_plan plan = {.n_el = N_EL, .n_az = n_az, .n_freq = N_FREQ, .el_deg = el_deg, .az_deg = az_deg, .freq_hz = freq_hz, .parts = true,
-                                .n_threads = n_threads, .mechanisms = RG_SURFACE | RG_EDGE | RG_BOUNCE};
+                                .n_threads = n_threads, .mechanisms = mechanisms};
     rg_error err;
     *r = (record){0};
     ck_assert_msg(rg_sweep(scene, &plan, keep, r, NULL, &err) == RG_OK, "%s", err.text);
@@ -77,7 +78,7 @@ START_TEST(the_same_bits_for_any_threads_and_processor)
         ck_assert(rg_scene_new_for(&scene, mesh, cpu, NULL) == RG_OK);
         for (int t = 0; t < 4; t++)
             for (int few = 0; few < 2; few++) {             /* many aspects go to a thread each; one aspect is shared by all */
-                sweep(&got, scene, n_threads[t], few ? 1 : N_AZ);
+                sweep(&got, scene, all, n_threads[t], few ? 1 : N_AZ);
                 if (cpu == RG_CPU_PLAIN && t == 0 && !few) want = got;
                 const size_t n = few ? N_FREQ * 4 : got.n_s;
                 ck_assert_msg(memcmp(got.s_m, want.s_m, n * sizeof want.s_m[0]) == 0, "%s, %d threads", rg_cpu_name(cpu), n_threads[t]);
@@ -94,7 +95,7 @@ START_TEST(order_and_parts)
     rg_mesh *mesh = ball_and_plate();
     rg_scene *scene = NULL;
     ck_assert(rg_scene_new(&scene, mesh, NULL) == RG_OK);
-    sweep(&r, scene, 2, N_AZ);
+    sweep(&r, scene, all, 2, N_AZ);
     ck_assert_uint_eq(r.n, N_AZ * N_EL);
     for (size_t i = 0; i < r.n; i++) {
         ck_assert_double_eq(r.az_deg[i], 17.0 * (double)(i % N_AZ) - 40.0);
@@ -119,7 +120,7 @@ START_TEST(surface_agrees_with_the_sweep)
     rg_scene *scene = NULL;
     double complex s_m[1][RG_N_POL];
     ck_assert(rg_scene_new(&scene, mesh, NULL) == RG_OK);
-    sweep(&r, scene, 1, N_AZ);
+    sweep(&r, scene, RG_SURFACE, 1, N_AZ);
     const rg_aspect aspect = {-40.0 * 3.14159265358979323846 / 180.0, 0.0};
     ck_assert(rg_surface(scene, aspect, 1, &(double){76e9}, s_m, NULL) == RG_OK);
     ck_assert_double_eq_tol(cabs(s_m[0][RG_VV] - r.s_m[0][RG_VV]), 0.0, 1e-11);
