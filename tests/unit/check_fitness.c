@@ -322,6 +322,24 @@ START_TEST(a_lone_crease_is_a_feature)
 }
 END_TEST
 
+/* A strip of six panels of 100 mm that turn by 2 degrees each, but by 15 in the middle; beside a turn of 8 the same is no crease. */
+START_TEST(a_crease_stands_out_of_its_neighbourhood)
+{
+    const double turn_deg[5] = {2, _i ? 8 : 2, 15, 2, 2};
+    double x = 0, z = 0, a = 0;
+    work.n_vertices = work.n_facets = 0;
+    for (int i = 0; i <= 6; i++) {
+        vertex(x, 0, z), vertex(x, 0.5, z);
+        if (i > 0 && i < 6) a += turn_deg[i - 1] * PI / 180;
+        x += 0.1 * cos(a), z -= 0.1 * sin(a);
+    }
+    for (uint32_t i = 0; i < 12; i += 2) facet(i, i + 2, i + 3), facet(i, i + 3, i + 1);
+    const rg_fitness fitness = judged(made());
+    ck_assert_uint_eq(fitness.n_feature_edges, _i ? 0 : 1);
+    if (!_i) ck_assert_double_lt(fitness.sagitta_m[2], 1.3 * 0.1 * (2 * PI / 180) / 8);
+}
+END_TEST
+
 static void on_tilted_plane(double u, double v, double r[3])
 {
     r[0] = 3.0 * u + 0.1 * v * v, r[1] = 1.7 * v - 0.2 * u, r[2] = 0.31 * r[0] - 0.47 * r[1];
@@ -452,6 +470,7 @@ int main(void)
     tcase_add_test(tests, flat_facets_have_no_limit);
     tcase_add_test(tests, coarse_tubes_are_named_as_unsure);
     tcase_add_loop_test(tests, a_lone_crease_is_a_feature, 2, 29);
+    tcase_add_loop_test(tests, a_crease_stands_out_of_its_neighbourhood, 0, 2);
     tcase_add_test(tests, single_precision_does_not_curve_a_plane);
     tcase_add_test(tests, figures_follow_the_scale);
     tcase_add_test(tests, edges_as_short_as_it_asks_for_are_fit);
