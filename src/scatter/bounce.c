@@ -117,31 +117,24 @@ static int by_index(const void *a, const void *b)
     return (x > y) - (x < y);
 }
 
-/* Names the facets that a beam may meet, rising, each once. False without memory. */
-static bool name_targets(const bounce_job *job, const vec3 corner[], int n_corners, vec3 along, depth *here, size_t *n)
+/* Names the facets that the beam off a part of a face may meet, rising. False without memory. */
+static bool name_targets(const bounce_job *job, const placed_face *from, const rg_polygon *part, vec3 along, depth *here, size_t *n)
 {
     rg_prism prism = {.toward = {along.x, along.y, along.z}};
-    *n = 0;
-    for (int i = 1; i + 1 < n_corners; i++) {
-        const vec3 *c[3] = {&corner[0], &corner[i], &corner[i + 1]};
-        for (int k = 0; k < 3; k++) {
-            prism.corner_m[k][0] = c[k]->x;
-            prism.corner_m[k][1] = c[k]->y;
-            prism.corner_m[k][2] = c[k]->z;
-        }
-        const size_t found = rg_bvh_in_prism(job->scene->bvh, &prism, here->near_room - *n, here->near + *n);
-        if (found > here->near_room - *n) {
-            if (!rg_make_room((void **)&here->near, &here->near_room, *n + found, sizeof *here->near)) return false;
-            rg_bvh_in_prism(job->scene->bvh, &prism, here->near_room - *n, here->near + *n);
-        }
-        *n += found;
+    rg_facet_point corner[3];
+    rg_polygon_enclose(part, corner);
+    for (int i = 0; i < 3; i++) {
+        const vec3 r = point_on(from, corner[i].a, corner[i].b);
+        prism.corner_m[i][0] = r.x;
+        prism.corner_m[i][1] = r.y;
+        prism.corner_m[i][2] = r.z;
     }
-    if (*n == 0) return true;
-    qsort(here->near, *n, sizeof *here->near, by_index);
-    size_t kept = 1;
-    for (size_t i = 1; i < *n; i++)
-        if (here->near[i] != here->near[kept - 1]) here->near[kept++] = here->near[i];
-    *n = kept;
+    *n = rg_bvh_in_prism(job->scene->bvh, &prism, here->near_room, here->near);
+    if (*n > here->near_room) {
+        if (!rg_make_room((void **)&here->near, &here->near_room, *n, sizeof *here->near)) return false;
+        rg_bvh_in_prism(job->scene->bvh, &prism, here->near_room, here->near);
+    }
+    if (*n > 1) qsort(here->near, *n, sizeof *here->near, by_index);
     return true;
 }
 
@@ -229,18 +222,15 @@ static bool follow(const bounce_job *job, const rg_face *face, const rg_polygon 
     const plane_wave wave = reflect(arriving, &from);
     const rg_seen seen = {.view = view_along(wave.u), .reach_m = job->seen->reach_m};
     depth *here = &job->scratch->at[n_done];
-    vec3 corner[RG_POLYGON_ROOM];
     double beam[RG_POLYGON_ROOM][3];
     rg_horizon horizon = {.facet = face->index};
     size_t n_targets;
 
-    for (int i = 0; i < part->n; i++) {
-        corner[i] = point_on(&from, part->a[i], part->b[i]);
-        in_view(&seen.view, corner[i], beam[part->n - 1 - i]);     /* from behind, the way round is the other one */
-    }
+    for (int i = 0; i < part->n; i++)                       /* from behind, the way round is the other one */
+        in_view(&seen.view, point_on(&from, part->a[i], part->b[i]), beam[part->n - 1 - i]);
     in_view(&seen.view, from.corner[0], horizon.at_m);
     in_view(&seen.view, from.normal, horizon.normal);
-    if (!name_targets(job, corner, part->n, vec3_scale(wave.u, -1.0), here, &n_targets)) return false;
+    if (!name_targets(job, &from, part, vec3_scale(wave.u, -1.0), here, &n_targets)) return false;
 
     for (size_t t = 0; t < n_targets; t++) {
         rg_face target;

@@ -76,3 +76,21 @@ bool rg_polygon_minus(const rg_polygon *polygon, const rg_region *region, size_t
     }
     return true;
 }
+
+void rg_polygon_enclose(const rg_polygon *p, rg_facet_point corner[3])
+{
+    double least_a = 1.0, least_b = 1.0, most = 0.0;
+    for (int i = 0; i < p->n; i++) {
+        least_a = p->a[i] < least_a ? p->a[i] : least_a;
+        least_b = p->b[i] < least_b ? p->b[i] : least_b;
+        most = p->a[i] + p->b[i] > most ? p->a[i] + p->b[i] : most;
+    }
+    if (least_a <= 0.0 && least_b <= 0.0 && most >= 1.0) {  /* exactly the facet, so that what it shares with others stays shared */
+        least_a = least_b = 0.0;
+        most = 1.0;
+    }
+    const double size = most - least_a - least_b;
+    corner[0] = (rg_facet_point){least_a, least_b};
+    corner[1] = (rg_facet_point){least_a + size, least_b};
+    corner[2] = (rg_facet_point){least_a, least_b + size};
+}

@@ -31,4 +31,8 @@ bool rg_polygon_split(const rg_polygon *polygon, const rg_half_plane *plane, rg_
  * with *n of no meaning, when room polygons do not suffice or one would have more than RG_POLYGON_CORNERS corners. */
 bool rg_polygon_minus(const rg_polygon *polygon, const rg_region *region, size_t room, rg_polygon out[], size_t *n);
 
+/* A triangle of the facet's shape that holds the polygon, no larger than it must be: the facet itself, or one with sides along its sides. */
+typedef struct { double a, b; } rg_facet_point;
+void rg_polygon_enclose(const rg_polygon *polygon, rg_facet_point corner[3]);
+
 #endif

@@ -170,12 +170,17 @@ static int by_index(const void *a, const void *b)
     return (x > y) - (x < y);
 }
 
-/* Names the facets in the shadow prism of a face. */
-static bool query_prism(const rg_scene *scene, const rg_seen *seen, const rg_face *face, rg_lit_scratch *scratch, size_t *n)
+/* Names the facets in the shadow prism of a part of a face. */
+static bool query_prism(const rg_scene *scene, const rg_seen *seen, const rg_face *face, const rg_polygon *part, rg_lit_scratch *scratch, size_t *n)
 {
     rg_prism prism = {.toward = {seen->view.s.x, seen->view.s.y, seen->view.s.z}};
+    rg_facet_point corner[3];
+    rg_polygon_enclose(part, corner);
+    const double *v[3];
+    for (int i = 0; i < 3; i++) v[i] = scene->mesh->vertex_m[face->vertex[i]];
     for (int i = 0; i < 3; i++)
-        for (int axis = 0; axis < 3; axis++) prism.corner_m[i][axis] = scene->mesh->vertex_m[face->vertex[i]][axis];
+        for (int axis = 0; axis < 3; axis++)
+            prism.corner_m[i][axis] = v[0][axis] * (1.0 - corner[i].a - corner[i].b) + v[1][axis] * corner[i].a + v[2][axis] * corner[i].b;
     *n = rg_bvh_in_prism(scene->bvh, &prism, scratch->near_room, scratch->near);
     if (*n > scratch->near_room) {
         if (!rg_make_room((void **)&scratch->near, &scratch->near_room, *n, sizeof *scratch->near)) return false;
@@ -191,7 +196,7 @@ bool rg_lit_part(const rg_scene *scene, const rg_seen *seen, const rg_face *face
     size_t n, n_hiding = 0;
     rg_face other;
     rg_region region;
-    if (!query_prism(scene, seen, face, scratch, &n)) return false;
+    if (!query_prism(scene, seen, face, part, scratch, &n)) return false;
     for (size_t i = 0; i < n; i++) {                        /* most are only neighbours, and not worth sorting */
         const uint32_t near = scratch->near[i];
         if (near == face->index || !rg_face_seen(&other, scene->mesh, seen, near) ||
