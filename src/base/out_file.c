@@ -12,7 +12,10 @@ struct rg_out_file {
     char *path, *temporary;         /* NULL for standard output */
 };
 
-static rg_status cannot_write(rg_error *err, const char *path) { return rg_fail(err, RG_SYSTEM, "%s cannot be written: %s", path, strerror(errno)); }
+static rg_status cannot_write(rg_error *err, const char *path)
+{
+    return rg_fail(err, RG_SYSTEM, "%s cannot be written: %s", path, errno == ENOENT ? "its folder is not there" : strerror(errno));
+}
 
 /* The mode that a file of fopen would have had. */
 static mode_t usual_mode(void)

@@ -37,8 +37,15 @@ void rg_progress_show(rg_progress *progress, size_t done)
     fflush(progress->stream);
 }
 
+void rg_progress_hide(rg_progress *progress)
+{
+    if (!progress->stream || progress->shown_s <= 0.0) return;
+    fputs("\r\033[K", progress->stream);
+    fflush(progress->stream);
+}
+
 void rg_progress_end(rg_progress *progress)
 {
-    if (progress->stream && progress->shown_s > 0.0) fputs("\r\033[K", progress->stream);
+    rg_progress_hide(progress);
     progress->stream = NULL;
 }

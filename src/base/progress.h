@@ -16,7 +16,9 @@ typedef struct {
 rg_progress rg_progress_start(FILE *stream, bool quiet, const char *what, size_t n);
 /* Redraws at most ten times a second. */
 void rg_progress_show(rg_progress *progress, size_t done);
-/* Wipes the line. */
+/* Wipes the line, so that other text may follow; it comes back with the next show. */
+void rg_progress_hide(rg_progress *progress);
+/* Wipes the line for good. */
 void rg_progress_end(rg_progress *progress);
 
 #endif

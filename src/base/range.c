@@ -1,5 +1,6 @@
 /* range.c - a list of quantities, from text */
 #include "base/range.h"
+#include "base/number.h"
 #include <math.h>
 #include <stdbool.h>
 #include <stdio.h>
@@ -53,13 +54,22 @@ static rg_status add_range(rg_list *list, size_t *room, double start, double ste
     return RG_OK;
 }
 
+/* The same range with the sign of its step turned, as the user would write it. */
+static rg_status wrong_sign(const char *text, const char *runs, rg_error *err)
+{
+    const char *step = strrchr(text, ':') + 1;
+    const int n = (int)(step - text);
+    while (*step == ' ') step++;
+    return rg_fail(err, RG_BAD_VALUE, "%s runs %s, so its step has the wrong sign: write %.*s%s%s", text, runs, n, text,
+                   *step == '-' ? "" : "-", *step == '-' || *step == '+' ? step + 1 : step);
+}
+
 static rg_status add_stepped(rg_list *list, size_t *room, const char *text, const double v[3], rg_error *err)
 {
     const double start = v[0], stop = v[1], step = v[2];
     if (step == 0.0) return rg_fail(err, RG_BAD_VALUE, "%s has a step of 0: write START:STOP:STEP with a step that gets there", text);
     if ((stop - start) * step < 0.0)
-        return rg_fail(err, RG_BAD_VALUE, "%s runs %s, so its step has the wrong sign: turn the sign of the step", text,
-                       stop < start ? "downward" : "upward");
+        return wrong_sign(text, stop < start ? "downward" : "upward", err);
     const double steps = (stop - start) / step, whole = rint(steps);
     if (!(steps < MOST_VALUES)) return rg_fail(err, RG_BAD_VALUE, "%s has more than %.0f values: cut it into several runs", text, MOST_VALUES);
     const bool lands = fabs(steps - whole) <= WHOLE;
@@ -68,9 +78,9 @@ static rg_status add_stepped(rg_list *list, size_t *room, const char *text, cons
 
 static rg_status add_counted(rg_list *list, size_t *room, const char *text, const double v[2], const char *count_text, rg_error *err)
 {
-    char *end;
-    const double count = strtod(count_text, &end);
-    if (*end || end == count_text || !(count >= 1.0) || count != floor(count) || count > MOST_VALUES)
+    double count = 0.0;
+    const size_t taken = rg_take_number(&count, count_text);
+    if (taken == 0 || count_text[taken] || !(count >= 1.0) || count != floor(count) || count > MOST_VALUES)
         return rg_fail(err, RG_BAD_VALUE, "%s: after '/' stands how many values, 1 to %.0f, such as %.*s/11", text, MOST_VALUES,
                        (int)(count_text - 1 - text), text);
     if (count == 1.0 && v[0] != v[1]) return rg_fail(err, RG_BAD_VALUE, "%s has two ends but one value: write a count of 2 or more", text);
