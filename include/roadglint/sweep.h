@@ -19,6 +19,8 @@ typedef struct {
     double az_deg, el_deg;
     size_t n_slots, n_freq;
     const double complex (*s_m)[RG_N_POL];      /* [n_slots][n_freq], metres */
+    double undecided_m2;    /* area of pieces under lambda/8 that were lit or dark as a whole, where occluders crowded; an error of
+                             * k/sqrt(pi) times this at the most. 0 almost always: shadows are cut exactly */
 } rg_sweep_aspect;
 
 /** Takes the aspects in the order of the table (elevation slowest, then azimuth), never two at a time. Anything but RG_OK ends

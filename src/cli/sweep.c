@@ -90,6 +90,7 @@ typedef struct {
     const rg_mesh *mesh;
     rg_progress progress;
     size_t done;
+    double undecided_m2;        /* of the worst aspect */
 } row_writer;
 
 static rg_status write_aspect(void *user, const rg_sweep_aspect *aspect, rg_error *err)
@@ -101,6 +102,7 @@ static rg_status write_aspect(void *user, const rg_sweep_aspect *aspect, rg_erro
         for (size_t slot = 0; slot < aspect->n_slots && !status; slot++)
             status = rg_csv_row(w->out, &w->format, aspect->az_deg, aspect->el_deg, freq->value[f],
                                 slot == 0 ? "total" : rg_mesh_part_name(w->mesh, slot - 1), aspect->s_m[slot * aspect->n_freq + f], err);
+    if (aspect->undecided_m2 > w->undecided_m2) w->undecided_m2 = aspect->undecided_m2;
     rg_progress_show(&w->progress, ++w->done);
     return status;
 }
@@ -148,6 +150,9 @@ static rg_status sweep_to(FILE *out, const sweep_job *job, const char *path, con
     writer.progress = rg_progress_start(stderr, job->quiet, "aspects", plan.n_el * plan.n_az);
     status = rg_sweep(scene, &plan, write_aspect, &writer, &stop, err);
     rg_progress_end(&writer.progress);
+    if (!status && !job->quiet && writer.undecided_m2 > 0.0)
+        fprintf(stderr, "%s: where shadows crowd, up to %.2g m2 an aspect was taken as lit or dark in pieces under lambda/8\n", path,
+                writer.undecided_m2);
     if (status == RG_STOPPED) rg_fail(err, RG_STOPPED, "interrupted after %zu of %zu aspects", writer.done, plan.n_el * plan.n_az);
     return status;
 }

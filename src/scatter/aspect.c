@@ -266,6 +266,13 @@ rg_status rg_aspect_run(rg_aspect_bench *bench, const rg_view *view, double comp
     return status;
 }
 
+double rg_aspect_undecided_m2(rg_aspect_bench *bench)
+{
+    double sum_m2 = 0.0;
+    for (int t = 0; t < bench->n_threads; t++) sum_m2 += rg_lit_take_undecided_m2(bench->workers[t].lit_scratch);
+    return sum_m2;
+}
+
 rg_status rg_surface(const rg_scene *scene, rg_aspect aspect, size_t n_freq, const double freq_hz[],
                      double complex s_m[][RG_N_POL], rg_error *err)
 {

@@ -23,6 +23,10 @@ typedef struct rg_aspect_bench rg_aspect_bench;
 rg_status rg_aspect_bench_new(rg_aspect_bench **out, const rg_scene *scene, const rg_aspect_job *job, int n_threads, rg_error *err);
 void rg_aspect_bench_free(rg_aspect_bench *bench);     /* takes NULL */
 
+/* After rg_aspect_run: area that the cutting of shadows left undecided, see rg_lit_take_undecided_m2; its last bits may follow the
+ * number of threads. */
+double rg_aspect_undecided_m2(rg_aspect_bench *bench);
+
 /* The amplitudes of one aspect; the threads of the bench share its blocks, and the result does not depend on how many they are.
  *
  *    s_m[n_freq][RG_N_POL]               out: the whole mesh

@@ -18,6 +18,7 @@ struct rg_lit_scratch {
     uint32_t *list;                 /* indices of regions, one stretch for each level of the halving */
     size_t list_room;
     rg_polygon cut[2][POLYGONS_AT_ONCE];
+    double undecided_m2;
 };
 
 /* What add_lit hands down unchanged. */
@@ -71,6 +72,13 @@ static bool hides_middle(const rg_region *region, const rg_polygon *part)
     for (int e = 0; e < region->n; e++)
         if (rg_half_plane_at(&region->edge[e], a / part->n, b / part->n) < 0.0) return false;
     return true;
+}
+
+double rg_lit_take_undecided_m2(rg_lit_scratch *scratch)
+{
+    const double taken = scratch->undecided_m2;
+    scratch->undecided_m2 = 0.0;
+    return taken;
 }
 
 /* Appends the lit polygons of a part, all shadows cut out; false when they do not fit, and then nothing has been appended. *enough is
@@ -140,6 +148,7 @@ static bool add_lit(const lit_job *job, const rg_polygon *part, size_t first, si
     if (n == 0) return add_polygon(job->lit, part);
     if (n <= OCCLUDERS_AT_ONCE && cut_out(job, part, scratch->list + first, n, &enough)) return enough;
     if (longest_m2(job->face, part, p, q) <= job->grain_m * job->grain_m) {
+        scratch->undecided_m2 += 0.5 * job->face->normal_m2[2] * rg_polygon_area2(part);
         for (size_t i = 0; i < n; i++)
             if (hides_middle(&scratch->region[scratch->list[first + i]], part)) return true;
         return add_polygon(job->lit, part);

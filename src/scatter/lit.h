@@ -12,6 +12,10 @@ typedef struct rg_lit_scratch rg_lit_scratch;
 rg_lit_scratch *rg_lit_scratch_new(void);
 void rg_lit_scratch_free(rg_lit_scratch *scratch);  /* takes NULL */
 
+/* Area, across the line of sight, of the pieces that their middle decided as a whole since the last call of this: what the cutting
+ * left undecided. 0 wherever all shadows were cut exactly. */
+double rg_lit_take_undecided_m2(rg_lit_scratch *scratch);
+
 extern const rg_polygon rg_whole_facet;
 
 /* Appends to lit what is seen of a part of a face.

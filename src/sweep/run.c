@@ -18,6 +18,7 @@ typedef struct {
     rg_aspect_bench **bench;
     size_t batch;
     double complex (*s_m)[RG_N_POL];        /* [batch][n_slots][n_freq] */
+    double *undecided_m2;                   /* [batch] */
 } sweep_work;
 
 static rg_status check_angles(const char *name, size_t n, const double deg[], rg_error *err)
@@ -40,7 +41,8 @@ static rg_status start_work(sweep_work *work, rg_error *err)
     work->batch = share_aspect ? 1 : BATCH_PER_THREAD * (size_t)n_threads;
     work->bench = calloc((size_t)work->n_benches, sizeof(rg_aspect_bench *));
     work->s_m = calloc(work->batch * work->n_slots * plan->n_freq, sizeof *work->s_m);
-    if (!work->bench || !work->s_m)
+    work->undecided_m2 = calloc(work->batch, sizeof *work->undecided_m2);
+    if (!work->bench || !work->s_m || !work->undecided_m2)
         return rg_fail(err, RG_NO_MEMORY, "no memory for %zu aspects at a time of %zu frequencies and %zu parts", work->batch,
                        plan->n_freq, work->n_slots);
     rg_status status = RG_OK;
@@ -54,6 +56,7 @@ static void end_work(sweep_work *work)
     for (int t = 0; t < work->n_benches && work->bench; t++) rg_aspect_bench_free(work->bench[t]);
     free(work->bench);
     free(work->s_m);
+    free(work->undecided_m2);
 }
 
 static double complex (*slots_of(const sweep_work *work, size_t in_batch))[RG_N_POL]
@@ -71,9 +74,9 @@ static rg_status run_batch(sweep_work *work, size_t first, size_t n, rg_error *e
         const size_t aspect = first + i;
         const rg_view view = rg_view_of_deg(plan->az_deg[aspect % plan->n_az], plan->el_deg[aspect / plan->n_az]);
         double complex(*s_m)[RG_N_POL] = slots_of(work, i);
-        const rg_status status =
-            rg_aspect_run(work->bench[work->n_benches > 1 ? omp_get_thread_num() : 0], &view, s_m,
-                          plan->parts ? s_m + plan->n_freq : NULL, work->stop, &mine);
+        rg_aspect_bench *bench = work->bench[work->n_benches > 1 ? omp_get_thread_num() : 0];
+        const rg_status status = rg_aspect_run(bench, &view, s_m, plan->parts ? s_m + plan->n_freq : NULL, work->stop, &mine);
+        work->undecided_m2[i] = rg_aspect_undecided_m2(bench);
         if (status) {
 #pragma omp critical
             first_status = rg_fail(err, status, "%s", mine.text);
@@ -100,7 +103,8 @@ rg_status rg_sweep(const rg_scene *scene, const rg_sweep_plan *plan, rg_sweep_si
             const rg_sweep_aspect done = {.az_deg = plan->az_deg[(first + i) % plan->n_az],
                                           .el_deg = plan->el_deg[(first + i) / plan->n_az],
                                           .n_slots = work.n_slots, .n_freq = plan->n_freq,
-                                          .s_m = (const double complex(*)[RG_N_POL])slots_of(&work, i)};
+                                          .s_m = (const double complex(*)[RG_N_POL])slots_of(&work, i),
+                                          .undecided_m2 = work.undecided_m2[i]};
             status = sink(user, &done, err);
         }
     }
