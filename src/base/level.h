@@ -5,7 +5,7 @@
 
 #define RG_LEVEL_FLOOR_DB (-200.0)
 
-/* 20 log10 |s|, and the floor for all that is less, NaN included. */
+/* 20 log10 |s|, and the floor for all that is less, NaN included. Always finite: an infinite part counts as the largest double. */
 double rg_level_db(double complex s);
 
 #endif

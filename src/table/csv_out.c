@@ -1,5 +1,6 @@
 /* csv_out.c - tables as CSV */
 #include "base/level.h"
+#include "table/decimal.h"
 #include "table/table.h"
 #include <errno.h>
 #include <string.h>
@@ -31,23 +32,6 @@ rg_status rg_csv_header(FILE *out, const rg_row_format *format, rg_error *err)
     return written(out, err);
 }
 
-/* The shortest decimal that reads back as the same double; whole numbers without an exponent. */
-static void print_number(FILE *out, double v)
-{
-    char text[40];
-    if (v == 0.0) v = 0.0;                                  /* no -0 */
-    if (v < 1e15 && v > -1e15 && v == (double)(long long)v) {
-        fprintf(out, "%lld", (long long)v);
-        return;
-    }
-    for (int digits = 15; digits <= 17; digits++) {
-        double back;
-        snprintf(text, sizeof text, "%.*g", digits, v);
-        if (sscanf(text, "%lf", &back) == 1 && back == v) break;
-    }
-    fputs(text, out);
-}
-
 static void print_part(FILE *out, const char *part)
 {
     if (!strpbrk(part, ",\"\r\n")) {
@@ -65,19 +49,31 @@ static void print_part(FILE *out, const char *part)
 rg_status rg_csv_row(FILE *out, const rg_row_format *format, double az_deg, double el_deg, double freq_hz, const char *part,
                      const double complex s_m[], rg_error *err)
 {
-    print_number(out, az_deg);
-    fputc(',', out);
-    print_number(out, el_deg);
-    fputc(',', out);
-    print_number(out, freq_hz);
+    const double place[] = {az_deg, el_deg, freq_hz};
+    char text[(3 + 3 * RG_TABLE_N_POL) * (RG_DECIMAL_ROOM + 1) + 1], *end = text;
+    for (int i = 0; i < 3; i++) {
+        if (i > 0) *end++ = ',';
+        end = rg_put_shortest(end, place[i]);
+    }
     if (format->part_column) {
-        fputc(',', out);
+        *end++ = ',';
+        fwrite(text, 1, (size_t)(end - text), out);
         print_part(out, part);
+        end = text;
     }
     for (int p = 0; p < RG_TABLE_N_POL; p++)
-        if (format->pol[p]) fprintf(out, ",%.7f", rg_level_db(s_m[p]));
+        if (format->pol[p]) {
+            *end++ = ',';
+            end = rg_put_level(end, rg_level_db(s_m[p]));
+        }
     for (int p = 0; p < RG_TABLE_N_POL && format->complex_columns; p++)
-        if (format->pol[p]) fprintf(out, ",%.15e,%.15e", creal(s_m[p]), cimag(s_m[p]));
-    fputc('\n', out);
+        if (format->pol[p]) {
+            *end++ = ',';
+            end = rg_put_amplitude(end, creal(s_m[p]));
+            *end++ = ',';
+            end = rg_put_amplitude(end, cimag(s_m[p]));
+        }
+    *end++ = '\n';
+    fwrite(text, 1, (size_t)(end - text), out);
     return written(out, err);
 }
