@@ -4,7 +4,7 @@
 #include <stdlib.h>
 #include <string.h>
 
-enum { SUB = 3, STRIP = 8, N_COLOURS = 20 };    /* rays a pixel's side; pixel rows a thread takes at once */
+enum { SUB = 3, STRIP = 8, N_COLOURS = 20, N_SHADES = 2 };    /* rays a pixel's side; pixel rows a thread takes at once */
 enum { HATCH = 6 };                             /* pixels from stripe to stripe on back sides */
 
 #define AMBIENT 0.30            /* of the light that a facet edge-on still shows */
@@ -26,7 +26,7 @@ typedef struct {
     const rg_mesh *mesh;
     const rg_mesh_view *view;
     const rg_bvh *bvh;
-    float linear[N_COLOURS][3], ground[3];
+    float linear[N_SHADES * N_COLOURS][3], ground[3];
 } painter;
 
 typedef struct {
@@ -51,7 +51,8 @@ static uint32_t to_byte(double x)
 uint32_t rg_part_colour(size_t part)
 {
     const unsigned char *c = colour[part % N_COLOURS];
-    return (uint32_t)c[0] << 16 | (uint32_t)c[1] << 8 | c[2];
+    const uint32_t tenths = part / N_COLOURS % N_SHADES ? 6 : 10;       /* the second twenty: the same, darker */
+    return c[0] * tenths / 10 << 16 | c[1] * tenths / 10 << 8 | c[2] * tenths / 10;
 }
 
 rg_mesh_view rg_mesh_view_from(const rg_mesh *mesh, double az_rad, double el_rad, int width, int min_height, int max_height)
@@ -134,7 +135,7 @@ static void add_light(const painter *p, const seen *at, size_t stride, int x, in
     const bool back = facing < 0.0 && !p->mesh->shells[p->mesh->shell[at->facet]].closed;
     double share = (AMBIENT + (1.0 - AMBIENT) * facing * facing) * (double)edge;
     if (back) share *= (x + y) % HATCH < HATCH / 2 ? 0.30 : 0.75;
-    for (int i = 0; i < 3; i++) light[i] += share * (double)p->linear[part % N_COLOURS][i];
+    for (int i = 0; i < 3; i++) light[i] += share * (double)p->linear[part % (N_SHADES * N_COLOURS)][i];
     shown[part]++;
 }
 
@@ -180,7 +181,7 @@ rg_status rg_mesh_view_paint(const rg_mesh *mesh, const rg_mesh_view *view, uint
     if (status) return status;
     painter p = {.mesh = mesh, .view = view, .bvh = bvh};
     for (int i = 0; i < 3; i++) {
-        for (int c = 0; c < N_COLOURS; c++) p.linear[c][i] = to_linear(colour[c][i]);
+        for (size_t c = 0; c < N_SHADES * N_COLOURS; c++) p.linear[c][i] = to_linear(rg_part_colour(c) >> (16 - 8 * i) & 255u);
         p.ground[i] = to_linear(RG_VIEW_BACKGROUND >> (16 - 8 * i) & 255u);
     }
     for (size_t part = 0; part < mesh->n_parts; part++) shown_px[part] = 0.0;

@@ -20,7 +20,8 @@ rg_mesh_view rg_mesh_view_from(const rg_mesh *mesh, double az_rad, double el_rad
 /* Where a pixel shows nothing. */
 #define RG_VIEW_BACKGROUND 0xf4f4f1u
 
-/* The colour of a part, 0xRRGGBB: twenty that stay apart in grey and for the three colour deficiencies when they follow one another. */
+/* The colour of a part, 0xRRGGBB: twenty that stay apart in grey and for the three colour deficiencies when they follow one another, then
+ * the same twenty darker, then all again. */
 uint32_t rg_part_colour(size_t part);
 
 /* Paints pixel[height][width], 0xffRRGGBB, and counts what is seen of each part: shown_px[n_parts], pixels. Nine rays a pixel; lit from
