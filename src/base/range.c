@@ -1,6 +1,7 @@
 /* range.c - a list of quantities, from text */
 #include "base/range.h"
 #include "base/number.h"
+#include <ctype.h>
 #include <math.h>
 #include <stdbool.h>
 #include <stdio.h>
@@ -131,8 +132,8 @@ rg_status rg_take_list(rg_list *list, rg_dimension dimension, const char *text, 
     for (char *item = copy, *next; item && !status; item = next) {
         next = strchr(item, ',');
         if (next) *next++ = 0;
-        while (*item == ' ') item++;
-        for (size_t n = strlen(item); n > 0 && item[n - 1] == ' '; n--) item[n - 1] = 0;
+        while (isspace((unsigned char)*item)) item++;
+        for (size_t n = strlen(item); n > 0 && isspace((unsigned char)item[n - 1]); n--) item[n - 1] = 0;
         status = *item ? add_item(&taken, &room, dimension, item, err)
                        : rg_fail(err, RG_BAD_VALUE, "a list with nothing between two commas: write it such as 0,15,30");
     }

@@ -5,11 +5,13 @@
 
 static const char about[] = "roadglint predicts the monostatic radar cross section of vehicles and roadside objects from triangle meshes";
 
-static const char exit_codes[] = "0 done; 1 compared and out of tolerance; 2 wrong usage; 3 the input file cannot be used; "
+static const char exit_codes[] = "0 done; 2 wrong usage; 3 the input file cannot be used;\n"
                                  "4 a system failure (disk, memory); 130 interrupted";
 
 static const char values[] = "Quantities carry their unit: 77GHz, 76.5e9Hz, 120mm, 0.5m. A bare number is SI, an angle degrees. "
-                             "A LIST is 0,15,30 or START:STOP:STEP or START:STOP/COUNT or a mix of them.";
+                             "A LIST is 0,15,30 or\n"
+                             "START:STOP:STEP or START:STOP/COUNT or a mix of them. --az LIST and --az=LIST are the same, --quiet=false takes a flag\n"
+                             "back, and of an option that is given twice the last one wins. -- ends the options.";
 
 static const rg_command *find_command(const char *name)
 {
@@ -96,6 +98,16 @@ static void print_words(FILE *out, const rg_command *command)
     for (size_t i = 0; command && i < command->n_options; i++) fprintf(out, "%s\n", command->option[i].name);
 }
 
+rg_status rg_no_command(const char *name, rg_error *err)
+{
+    const char *word[16] = {NULL};
+    size_t n = 0;
+    for (const rg_command *const *c = rg_commands; *c && n < 16; c++) word[n++] = (*c)->name;
+    const size_t nearest = rg_nearest_word(word, n, name, strlen(name));
+    if (nearest < n) return rg_fail(err, RG_BAD_VALUE, "there is no command '%s'; did you mean %s?", name, word[nearest]);
+    return rg_fail(err, RG_BAD_VALUE, "there is no command '%s'; 'roadglint help' lists them", name);
+}
+
 rg_status rg_cmd_help(int argc, char **argv, FILE *out, rg_error *err)
 {
     const bool words = argc > 1 && strcmp(argv[1], "--words") == 0;
@@ -106,7 +118,7 @@ rg_status rg_cmd_help(int argc, char **argv, FILE *out, rg_error *err)
     }
     if (name && strcmp(name, "help") == 0) name = NULL;
     const rg_command *command = name ? find_command(name) : NULL;
-    if (name && !command) return rg_fail(err, RG_BAD_VALUE, "there is no command '%s'; 'roadglint help' lists them", name);
+    if (name && !command) return rg_no_command(name, err);
     if (words) print_words(out, command);
     else if (command) rg_print_help(command, out);
     else print_commands(out);

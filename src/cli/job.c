@@ -15,6 +15,8 @@ const char *rg_job_path(int argc, char **argv)
 
 #ifdef ROADGLINT_HAS_CYAML
 #include <cyaml/cyaml.h>
+#include <ctype.h>
+#include <errno.h>
 #include <stdarg.h>
 
 /* libcyaml tells what is wrong line by line; the first line is the cause, the last ones where. */
@@ -30,6 +32,11 @@ static void keep_log(cyaml_log_t level, void *context, const char *format, va_li
         if (*c == '\n') *c = ' ';
 }
 
+static void trim_end(char *text)
+{
+    for (size_t n = strlen(text); n > 0 && isspace((unsigned char)text[n - 1]); n--) text[n - 1] = 0;
+}
+
 /* One optional text for each option: the schema is the option table. */
 static cyaml_schema_field_t *make_fields(const rg_command *command)
 {
@@ -42,16 +49,30 @@ static cyaml_schema_field_t *make_fields(const rg_command *command)
     return fields;
 }
 
-static rg_status take_text(const rg_command *command, size_t i, const char *text, const char *path, void *job, rg_error *err)
+static rg_status take_text(const rg_command *command, const char *name, const char *text, const char *path, void *job, rg_error *err)
 {
-    const rg_option *option = &command->option[i];
     rg_error why = {{0}};
-    if (!option->argument) {
-        if (strcmp(text, "false") == 0) return RG_OK;
-        if (strcmp(text, "true") != 0) return rg_fail(err, RG_BAD_VALUE, "%s: %s takes true or false, not '%s'", path, option->name + 2, text);
+    if (strcmp(name, "job") == 0) return rg_fail(err, RG_BAD_VALUE, "%s: a job file cannot take in another one; leave out the line 'job'", path);
+    const rg_status status = rg_take_option(command, name, text, job, &why);
+    return status ? rg_fail(err, status, "%s: %s", path, why.text) : RG_OK;
+}
+
+/* What libcyaml found wrong, in words that say what would be right. */
+static rg_status bad_file(const rg_command *command, const char *path, cyaml_err_t found, told *t, void *job, rg_error *err)
+{
+    static const char key_before[] = "Unexpected key: ", noise[] = " Load: Backtrace: ", gap[] = "  ";
+    char *key = found == CYAML_ERR_INVALID_KEY ? strstr(t->text, key_before) : NULL, *end;
+    if (key) {
+        key += sizeof key_before - 1;
+        if ((end = strstr(key, " Load: "))) *end = 0;
+        return take_text(command, key, "", path, job, err);
     }
-    const rg_status status = option->take((char *)job + option->offset, text, &why);
-    return status ? rg_fail(err, status, "%s: %s %s", path, option->name + 2, why.text) : RG_OK;
+    if (found == CYAML_ERR_FILE_OPEN) return rg_fail(err, RG_BAD_INPUT, "%s: %s", path, strerror(errno));
+    while ((end = strstr(t->text, noise))) memmove(end + 1, end + sizeof noise - 1, strlen(end + sizeof noise - 1) + 1);
+    while ((end = strstr(t->text, gap))) memmove(end, end + 1, strlen(end + 1) + 1);
+    trim_end(t->text);
+    return rg_fail(err, RG_BAD_INPUT, "%s: no list of options, one a line, such as az: 0,15,30 (%s)", path,
+                   strncmp(t->text, "Load: ", 6) == 0 ? t->text + 6 : t->text[0] ? t->text : cyaml_strerror(found));
 }
 
 rg_status rg_job_read(rg_job_file *file, const rg_command *command, const char *path, void *job, rg_error *err)
@@ -65,14 +86,15 @@ rg_status rg_job_read(rg_job_file *file, const rg_command *command, const char *
     char **texts = NULL;
     const cyaml_err_t found = cyaml_load_file(path, &config, &top, (cyaml_data_t **)&texts, NULL);
     free(fields);
-    if (found != CYAML_OK)
-        return rg_fail(err, found == CYAML_ERR_INVALID_KEY ? RG_BAD_VALUE : RG_BAD_INPUT, "%s: %s%s%s", path, cyaml_strerror(found),
-                       t.text[0] ? ": " : "", t.text);
+    if (found != CYAML_OK) return bad_file(command, path, found, &t, job, err);
     file->texts = texts;
     file->n = command->n_options;
     rg_status status = RG_OK;
     for (size_t i = 0; texts && i < command->n_options && !status; i++)
-        if (texts[i]) status = take_text(command, i, texts[i], path, job, err);
+        if (texts[i]) {
+            trim_end(texts[i]);                             /* a folded text, which suits long lists, ends in a newline */
+            status = take_text(command, command->option[i].name + 2, texts[i], path, job, err);
+        }
     return status;
 }
 

@@ -1,7 +1,10 @@
 /* main.c - picks the command, and turns a status into an exit code */
 #include "cli/options.h"
 #include <roadglint/version.h>
+#include <ctype.h>
+#include <errno.h>
 #include <signal.h>
+#include <stdlib.h>
 #include <string.h>
 
 const rg_command *const rg_commands[] = {&rg_command_sweep, &rg_command_inspect, &rg_command_shape, &rg_command_plot, NULL};
@@ -21,10 +24,11 @@ static int exit_code(rg_status status)
 
 static rg_status run_command(const rg_command *command, int argc, char **argv, rg_error *err)
 {
-    if (argc > 1 && (strcmp(argv[1], "--help") == 0 || strcmp(argv[1], "-h") == 0)) {
-        rg_print_help(command, stdout);
-        return RG_OK;
-    }
+    for (int i = 1; i < argc && strcmp(argv[i], "--") != 0; i++)
+        if (strcmp(argv[i], "--help") == 0 || strcmp(argv[i], "-h") == 0) {
+            rg_print_help(command, stdout);
+            return RG_OK;
+        }
     return command->run(argc, argv, stdout, err);
 }
 
@@ -38,7 +42,7 @@ static rg_status run(int argc, char **argv, rg_error *err)
     if (strcmp(name, "help") == 0 || strcmp(name, "--help") == 0 || strcmp(name, "-h") == 0) return rg_cmd_help(argc - 1, argv + 1, stdout, err);
     for (const rg_command *const *c = rg_commands; *c; c++)
         if (strcmp((*c)->name, name) == 0) return run_command(*c, argc - 1, argv + 1, err);
-    return rg_fail(err, RG_BAD_VALUE, "there is no command '%s'; 'roadglint help' lists them", name);
+    return rg_no_command(name, err);
 }
 
 int main(int argc, char **argv)
@@ -50,7 +54,12 @@ int main(int argc, char **argv)
         return 2;
     }
     rg_status status = run(argc, argv, &err);
-    if (!status && (fflush(stdout) != 0 || ferror(stdout))) status = rg_fail(&err, RG_SYSTEM, "standard output cannot be written");
-    if (status) fprintf(stderr, "roadglint %s: %s\n", argv[1], err.text);
+    if (!status && (fflush(stdout) != 0 || ferror(stdout))) status = rg_fail(&err, RG_SYSTEM, "standard output cannot be written: %s", strerror(errno));
+    if (status) {
+        for (char *c = err.text; *c; c++)
+            if (iscntrl((unsigned char)*c)) *c = ' ';       /* of a word that the user gave: an error is one line */
+        fprintf(stderr, "roadglint %s: %s\n", argv[1], err.text);
+    }
+    if (status == RG_STOPPED) _Exit(exit_code(status));     /* without the rest of a table for a pipe that nobody reads */
     return exit_code(status);
 }

@@ -5,16 +5,16 @@
 
 rg_status rg_take_string(void *field, const char *text, rg_error *err)
 {
-    if (!*text) return rg_fail(err, RG_BAD_VALUE, "it needs a value, not an empty one");
+    (void)err;
     *(const char **)field = text;
     return RG_OK;
 }
 
 rg_status rg_take_flag(void *field, const char *text, rg_error *err)
 {
-    (void)text;
-    (void)err;
-    *(bool *)field = true;
+    if (*text && strcmp(text, "true") != 0 && strcmp(text, "false") != 0)
+        return rg_fail(err, RG_BAD_VALUE, "takes true or false, not '%s'", text);
+    *(bool *)field = strcmp(text, "false") != 0;
     return RG_OK;
 }
 
@@ -129,18 +129,29 @@ static size_t distance(const char *a, size_t n_a, const char *b)
     return row[n_b];
 }
 
-static rg_status unknown_option(const rg_command *command, const char *name, size_t n, rg_error *err)
+size_t rg_nearest_word(const char *const word[], size_t n_words, const char *typed, size_t n)
 {
-    const rg_option *nearest = NULL;
-    size_t least = 4;                                       /* farther than three edits is no slip of the hand */
-    for (size_t i = 0; i < command->n_options; i++) {
-        const size_t d = distance(name, n, command->option[i].name);
+    size_t nearest = n_words, least = n / 2 < 4 ? n / 2 : 4;    /* half of the letters, or four, is no slip of the hand */
+    for (size_t i = 0; i < n_words; i++) {
+        const size_t n_word = strlen(word[i]), d = distance(typed, n, word[i]);
         if (d < least) {
             least = d;
-            nearest = &command->option[i];
+            nearest = i;
         }
+        if (nearest == n_words && n > 3 && strncmp(typed, word[i], n < n_word ? n : n_word) == 0) nearest = i;   /* --azimuth: --az */
     }
-    if (nearest) return rg_fail(err, RG_BAD_VALUE, "there is no option %.*s; did you mean %s?", (int)n, name, nearest->name);
+    return nearest;
+}
+
+/* dashes: "--", or nothing for the names in a job file. */
+static rg_status unknown_option(const rg_command *command, const char *dashes, const char *name, size_t n, rg_error *err)
+{
+    enum { MOST = 64 };
+    const char *word[MOST] = {NULL};
+    const size_t n_words = command->n_options < MOST ? command->n_options : MOST, n_dashes = strlen(dashes);
+    for (size_t i = 0; i < n_words; i++) word[i] = command->option[i].name + 2 - n_dashes;
+    const size_t nearest = rg_nearest_word(word, n_words, name, n);
+    if (nearest < n_words) return rg_fail(err, RG_BAD_VALUE, "there is no option %.*s; did you mean %s?", (int)n, name, word[nearest]);
     return rg_fail(err, RG_BAD_VALUE, "there is no option %.*s; 'roadglint help %s' lists them", (int)n, name, command->name);
 }
 
@@ -151,18 +162,23 @@ static const rg_option *find_option(const rg_command *command, const char *name,
     return NULL;
 }
 
-static rg_status take(const rg_option *option, const char *text, void *job, rg_error *err)
+/* name: the option as the user wrote it. */
+static rg_status take(const rg_option *option, const char *name, const char *text, void *job, rg_error *err)
 {
     rg_error why = {{0}};
+    if (!*text && option->argument) return rg_fail(err, RG_BAD_VALUE, "%s needs a value, not an empty one: %s", name, option->help);
     const rg_status status = option->take((char *)job + option->offset, text, &why);
-    return status ? rg_fail(err, status, "%s %s", option->name, why.text) : RG_OK;
+    return status ? rg_fail(err, status, "%s %s", name, why.text) : RG_OK;
 }
 
 rg_status rg_take_option(const rg_command *command, const char *name, const char *text, void *job, rg_error *err)
 {
-    for (size_t i = 0; i < command->n_options; i++)
-        if (strcmp(command->option[i].name + 2, name) == 0) return take(&command->option[i], text, job, err);
-    return unknown_option(command, name, strlen(name), err);
+    for (size_t i = 0; i < command->n_options; i++) {
+        const rg_option *option = &command->option[i];
+        if (strcmp(option->name + 2, name) != 0) continue;
+        return take(option, name, *text || option->argument ? text : "an empty text", job, err);
+    }
+    return unknown_option(command, "", name, strlen(name), err);
 }
 
 rg_status rg_take_options(const rg_command *command, int argc, char **argv, void *job, const char *positional[], size_t least, size_t most,
@@ -178,13 +194,12 @@ rg_status rg_take_options(const rg_command *command, int argc, char **argv, void
             const size_t n = strcspn(word, "=");
             const rg_option *option = find_option(command, word, n);
             const char *text = word[n] ? word + n + 1 : NULL;
-            if (!option) return unknown_option(command, word, n, err);
-            if (!option->argument && text) return rg_fail(err, RG_BAD_VALUE, "%s takes no value", option->name);
+            if (!option) return unknown_option(command, "--", word, n, err);
             if (option->argument && !text) {
-                if (i + 1 == argc) return rg_fail(err, RG_BAD_VALUE, "%s needs a value: %s %s", option->name, option->name, option->argument);
+                if (i + 1 == argc) return rg_fail(err, RG_BAD_VALUE, "%s needs a value: %s", option->name, option->help);
                 text = argv[++i];
             }
-            const rg_status status = take(option, text ? text : "", job, err);
+            const rg_status status = take(option, option->name, text ? text : "", job, err);
             if (status) return status;
         } else if (*n_positional == most) {
             return rg_fail(err, RG_BAD_VALUE, "'%s' is one word too many: roadglint %s %s", word, command->name, command->usage);
@@ -192,6 +207,8 @@ rg_status rg_take_options(const rg_command *command, int argc, char **argv, void
             positional[(*n_positional)++] = word;
         }
     }
-    if (*n_positional < least) return rg_fail(err, RG_BAD_VALUE, "something is missing: roadglint %s %s", command->name, command->usage);
+    if (*n_positional < least)
+        return rg_fail(err, RG_BAD_VALUE, "%.*s is missing: roadglint %s %s", (int)strcspn(command->usage, " ."), command->usage, command->name,
+                       command->usage);
     return RG_OK;
 }

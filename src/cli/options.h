@@ -15,7 +15,7 @@ typedef rg_status rg_take_fn(void *field, const char *text, rg_error *err);
 
 typedef struct {
     const char *name;           /* "--freq" */
-    const char *argument;       /* "LIST"; NULL: a flag, and take is called with an empty text */
+    const char *argument;       /* "LIST"; NULL: a flag, and take is called with an empty text where none was given */
     rg_take_fn *take;
     size_t offset;              /* of the field in the job */
     const char *help;           /* one line, no capital, no full stop */
@@ -44,14 +44,17 @@ void rg_list_field_free(rg_list_field *field);
 /* Words of a set, joined by commas, to a mask: bit i for word[i]. For take functions that know their words. */
 rg_status rg_take_words(unsigned *mask, const char *const word[], size_t n_words, const char *text, rg_error *err);
 
-/* Reads argv[1 ..] into job. An option is "--name VALUE" or "--name=VALUE", whatever VALUE starts with; the last of several wins; "--"
- * ends the options. All else goes to positional[0 .. most - 1]; fewer than least or more than most of them is an error that names
+/* Reads argv[1 ..] into job. An option is "--name VALUE" or "--name=VALUE", whatever VALUE starts with; a flag is "--name", and
+ * "--name=false" takes it back; the last of several wins; "--" ends the options. All else goes to positional[0 .. most - 1]; fewer than least or more than most of them is an error that names
  * the usage. RG_BAD_VALUE. */
 rg_status rg_take_options(const rg_command *command, int argc, char **argv, void *job, const char *positional[], size_t least, size_t most,
                           size_t *n_positional, rg_error *err);
 
-/* One option by its name without "--", as a job file gives it. RG_BAD_VALUE. */
+/* One option by its name without "--", as a job file gives it; the message has no "--" either. A flag takes "true" or "false". RG_BAD_VALUE. */
 rg_status rg_take_option(const rg_command *command, const char *name, const char *text, void *job, rg_error *err);
+
+/* Which of the words a slip of the hand turned into the first n characters of typed; n_words if none. */
+size_t rg_nearest_word(const char *const word[], size_t n_words, const char *typed, size_t n);
 
 /* Prints what `help COMMAND` says. */
 void rg_print_help(const rg_command *command, FILE *out);
@@ -60,6 +63,9 @@ extern const rg_command rg_command_sweep, rg_command_inspect, rg_command_shape, 
 
 /* All commands but help, in the order of the list; ends with NULL. */
 extern const rg_command *const rg_commands[];
+
+/* RG_BAD_VALUE, with the command that was meant. */
+rg_status rg_no_command(const char *name, rg_error *err);
 
 /* The command help itself. */
 rg_status rg_cmd_help(int argc, char **argv, FILE *out, rg_error *err);

@@ -8,6 +8,10 @@
 #include <roadglint/version.h>
 #include <signal.h>
 #include <string.h>
+#include <unistd.h>
+
+#define TOTAL "total"                   /* the part column of the sum over all parts */
+#define MOST_ROWS 1099511627776.0       /* 2^40, a petabyte of text: nobody means it */
 
 typedef struct {
     rg_mesh_frame frame;
@@ -67,20 +71,28 @@ static const char more[] =
     "  az: 0:359.9:0.1\n"
     "  out: saloon.csv";
 
-static volatile sig_atomic_t stop;
+static volatile sig_atomic_t stop, has_file;                /* a signal's handler has nothing else to speak through */
 
+/* Reading and building cannot be stopped, but there is nothing to clean up yet either. */
 static void on_signal(int number)
 {
+    static const char text[] = "roadglint sweep: interrupted\n";
     (void)number;
     stop = 1;
+    if (has_file) return;
+    const ssize_t told = write(STDERR_FILENO, text, sizeof text - 1);
+    (void)told;                                             /* who would hear of it */
+    _exit(130);
 }
 
+/* No SA_RESTART: a write to a pipe that nobody reads must end too. */
 static void listen_for_stop(void)
 {
-    struct sigaction action = {.sa_handler = on_signal};
+    struct sigaction action = {.sa_handler = on_signal}, before;
     sigemptyset(&action.sa_mask);
     sigaction(SIGINT, &action, NULL);
     sigaction(SIGTERM, &action, NULL);
+    if (sigaction(SIGHUP, NULL, &before) == 0 && before.sa_handler != SIG_IGN) sigaction(SIGHUP, &action, NULL);   /* nohup stays */
 }
 
 typedef struct {
@@ -90,6 +102,7 @@ typedef struct {
     const rg_mesh *mesh;
     rg_progress progress;
     size_t done;
+    bool on_terminal;           /* rows and progress share the screen */
     double undecided_m2;        /* of the worst aspect */
 } row_writer;
 
@@ -98,10 +111,11 @@ static rg_status write_aspect(void *user, const rg_sweep_aspect *aspect, rg_erro
     row_writer *w = user;
     const rg_list *freq = &w->job->freq.list;
     rg_status status = RG_OK;
+    if (w->on_terminal) rg_progress_hide(&w->progress);
     for (size_t f = 0; f < aspect->n_freq && !status; f++)
         for (size_t slot = 0; slot < aspect->n_slots && !status; slot++)
             status = rg_csv_row(w->out, &w->format, aspect->az_deg, aspect->el_deg, freq->value[f],
-                                slot == 0 ? "total" : rg_mesh_part_name(w->mesh, slot - 1), aspect->s_m[slot * aspect->n_freq + f], err);
+                                slot == 0 ? TOTAL : rg_mesh_part_name(w->mesh, slot - 1), aspect->s_m[slot * aspect->n_freq + f], err);
     if (aspect->undecided_m2 > w->undecided_m2) w->undecided_m2 = aspect->undecided_m2;
     rg_progress_show(&w->progress, ++w->done);
     return status;
@@ -142,7 +156,8 @@ static rg_status sweep_to(FILE *out, const sweep_job *job, const char *path, con
     const rg_sweep_plan plan = {.n_el = job->el.list.n, .n_az = job->az.list.n, .n_freq = job->freq.list.n, .el_deg = job->el.list.value,
                                 .az_deg = job->az.list.value, .freq_hz = job->freq.list.value, .parts = job->parts,
                                 .n_threads = job->n_threads, .mechanisms = job->mechanisms, .n_bounces = job->n_bounces};
-    row_writer writer = {.out = out, .format = {.complex_columns = job->complex_columns, .part_column = job->parts}, .job = job, .mesh = mesh};
+    row_writer writer = {.out = out, .format = {.complex_columns = job->complex_columns, .part_column = job->parts}, .job = job, .mesh = mesh,
+                         .on_terminal = isatty(fileno(out))};
     for (int p = 0; p < RG_TABLE_N_POL; p++) writer.format.pol[p] = job->pol >> p & 1u;
     rg_status status = write_head(out, job, path, mesh, err);
     if (!status) status = rg_csv_header(out, &writer.format, err);
@@ -153,8 +168,22 @@ static rg_status sweep_to(FILE *out, const sweep_job *job, const char *path, con
     if (!status && !job->quiet && writer.undecided_m2 > 0.0)
         fprintf(stderr, "%s: where shadows crowd, up to %.2g m2 an aspect was taken as lit or dark in pieces under lambda/8\n", path,
                 writer.undecided_m2);
-    if (status == RG_STOPPED) rg_fail(err, RG_STOPPED, "interrupted after %zu of %zu aspects", writer.done, plan.n_el * plan.n_az);
+    if (status && stop) status = rg_fail(err, RG_STOPPED, "interrupted after %zu of %zu aspects", writer.done, plan.n_el * plan.n_az);
     return status;
+}
+
+static rg_status check_parts(const sweep_job *job, const char *path, const rg_mesh *mesh, rg_error *err)
+{
+    const double n_rows = (double)job->el.list.n * (double)job->az.list.n * (double)job->freq.list.n *
+                          (double)(1 + (job->parts ? rg_mesh_n_parts(mesh) : 0));
+    if (n_rows > MOST_ROWS)
+        return rg_fail(err, RG_BAD_VALUE, "--el, --az, --freq and --parts make a table of %.3g rows, more than %.3g: cut it into several runs", n_rows,
+                       MOST_ROWS);
+    for (size_t p = 0; job->parts && p < rg_mesh_n_parts(mesh); p++)
+        if (strcmp(rg_mesh_part_name(mesh, p), TOTAL) == 0)
+            return rg_fail(err, RG_BAD_INPUT, "%s: a part has the name '" TOTAL "', which the table keeps for the sum: rename it, or leave out --parts",
+                           path);
+    return RG_OK;
 }
 
 static rg_status run_job(const sweep_job *job, const char *path, rg_error *err)
@@ -162,15 +191,18 @@ static rg_status run_job(const sweep_job *job, const char *path, rg_error *err)
     rg_mesh *mesh = NULL;
     rg_scene *scene = NULL;
     rg_out_file *file = NULL;
+    listen_for_stop();
     rg_status status = rg_mesh_read(&mesh, path, &job->frame, err);
     if (!status && !job->quiet) rg_tell_mesh(path, mesh);
+    if (!status) status = check_parts(job, path, mesh, err);
     if (!status) status = rg_scene_new(&scene, mesh, err);
+    has_file = 1;
     if (!status) status = rg_out_file_open(&file, job->out, err);
     if (!status) {
-        listen_for_stop();
         status = sweep_to(rg_out_file_stream(file), job, path, mesh, scene, err);
         if (!status) status = rg_out_file_keep(file, err);
         else rg_out_file_drop(file);
+        if (status && stop) status = RG_STOPPED;            /* a write that the signal broke off */
     }
     rg_scene_free(scene);
     rg_mesh_free(mesh);

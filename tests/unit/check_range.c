@@ -10,7 +10,7 @@ START_TEST(lists)
         {RG_ANGLE, "0,15,30", 3, 0, 15, 30}, {RG_ANGLE, "-180:180:0.1", 3601, -180, -179.9, 180}, {RG_ANGLE, "0:1:0.3", 4, 0, 0.3, 0.9},
         {RG_FREQUENCY, "76GHz:81GHz/1001", 1001, 76e9, 76.005e9, 81e9}, {RG_FREQUENCY, "76:81:1GHz", 6, 76e9, 77e9, 81e9},
         {RG_ANGLE, "10:-10:-5", 5, 10, 5, -10}, {RG_ANGLE, "0,10:20:5,-3", 5, 0, 10, -3}, {RG_ANGLE, "5:5:1,6", 2, 5, 6, 6},
-        {RG_ANGLE, " 1 , 2 ", 2, 1, 2, 2}, {RG_ANGLE, "1:2/2", 2, 1, 2, 2}, {RG_ANGLE, "0:359.9:0.1", 3600, 0, 0.1, 359.9}};
+        {RG_ANGLE, " 1 , 2 ", 2, 1, 2, 2}, {RG_ANGLE, "1,\n 2\n", 2, 1, 2, 2}, {RG_ANGLE, "1:2/2", 2, 1, 2, 2}, {RG_ANGLE, "0:359.9:0.1", 3600, 0, 0.1, 359.9}};
     for (size_t i = 0; i < sizeof good / sizeof good[0]; i++) {
         rg_list list = {0};
         rg_error err = {{0}};
