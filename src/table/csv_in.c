@@ -1,6 +1,7 @@
 /* csv_in.c - tables from CSV */
 #include "base/number.h"
 #include "base/room.h"
+#include "table/decimal.h"
 #include "table/table.h"
 #include <errno.h>
 #include <math.h>
@@ -11,11 +12,14 @@
 /* What a column holds; the last two families are followed by the polarisations. */
 typedef enum { IGNORED, AZ, EL, FREQ, PART, SIGMA, RE = SIGMA + RG_TABLE_N_POL, IM = RE + RG_TABLE_N_POL, N_ROLES = IM + RG_TABLE_N_POL } role;
 
-enum { MOST_COLUMNS = 64 };
+enum { MOST_COLUMNS = 64, CHUNK = 1 << 16, MOST_RECORD = 1 << 26 };     /* a head line may hold a list of a million angles */
 
 typedef struct {
     const char *path;
-    size_t line;                /* 1 is the first */
+    FILE *file;
+    char *text;                 /* what is read and not yet used: text[at .. n) */
+    size_t at, n, text_room;
+    size_t line, n_lines;       /* where the record starts, 1 is the first, and how many lines it takes */
     int n_columns, role[MOST_COLUMNS];
     char *name[MOST_COLUMNS];
     bool has[N_ROLES];
@@ -41,29 +45,36 @@ static role role_of(const char *name)
     return IGNORED;
 }
 
-/* The next field of a line, which is written to: quotes taken off (RFC 4180), *rest set behind its comma, or to NULL at the end. */
+/* The next field of a line, which is written to: quotes and the spaces around taken off (RFC 4180 has no spaces there, people have), *rest
+ * set behind its comma, or to NULL at the end. NULL: something stands beside the quotes. */
 static char *next_field(char **rest)
 {
-    char *in = *rest, *field = in, *out = in;
+    char *in = *rest + strspn(*rest, " \t"), *field = in, *end = in;
     if (*in == '"') {
-        field = ++in;
-        out = in;
-        while (*in && !(*in == '"' && in[1] != '"')) {
+        field = end = ++in;
+        for (; *in && !(*in == '"' && in[1] != '"'); in++) {
             if (*in == '"') in++;
-            *out++ = *in++;
+            *end++ = *in;
         }
-        if (*in == '"') in++;
-        while (*in && *in != ',') in++;
+        in += *in == '"';
+        in += strspn(in, " \t");
+        if (*in && *in != ',') return NULL;
     } else {
         while (*in && *in != ',') in++;
-        out = in;
+        end = in;
+        while (end > field && (end[-1] == ' ' || end[-1] == '\t')) end--;
     }
     *rest = *in == ',' ? in + 1 : NULL;
-    *out = 0;
+    *end = 0;
     return field;
 }
 
 static rg_status no_memory(const reader *r, rg_error *err) { return rg_fail(err, RG_NO_MEMORY, "%s: no memory for its rows", r->path); }
+
+static rg_status beside_quotes(const reader *r, rg_error *err)
+{
+    return rg_fail(err, RG_BAD_INPUT, "%s: line %zu: a quoted field goes on behind its quote; a quote within is written twice", r->path, r->line);
+}
 
 static rg_status add_head(reader *r, rg_table *t, char *line, rg_error *err)
 {
@@ -87,6 +98,7 @@ static rg_status read_header(reader *r, char *line, rg_error *err)
 {
     for (char *rest = line; rest; r->n_columns++) {
         const char *name = next_field(&rest);
+        if (!name) return beside_quotes(r, err);
         if (r->n_columns == MOST_COLUMNS) return rg_fail(err, RG_BAD_INPUT, "%s: line %zu: more than %d columns", r->path, r->line, MOST_COLUMNS);
         const role found = role_of(name);
         if (found != IGNORED && r->has[found]) return rg_fail(err, RG_BAD_INPUT, "%s: line %zu: column %s stands there twice", r->path, r->line, name);
@@ -107,13 +119,19 @@ static rg_status read_header(reader *r, char *line, rg_error *err)
     return any_level ? RG_OK : rg_fail(err, RG_BAD_INPUT, "%s: line %zu: no column of levels such as sigma_hh_dbsm", r->path, r->line);
 }
 
+static rg_status is_no_number(const reader *r, int column, const char *field, rg_error *err)
+{
+    return rg_fail(err, RG_BAD_INPUT, "%s: line %zu, column %s: '%.40s' is no number", r->path, r->line, r->name[column], field);
+}
+
 static rg_status read_field(reader *r, const rg_table *t, int column, const char *field, rg_error *err)
 {
     const int found = r->role[column];
     double value;
-    const size_t n = rg_take_number(&value, field);
-    if (n == 0 || field[n] || !isfinite(value))
-        return rg_fail(err, RG_BAD_INPUT, "%s: line %zu, column %s: '%.40s' is no number", r->path, r->line, r->name[column], field);
+    if (!rg_get_decimal(&value, field)) {
+        const size_t n = rg_take_number(&value, field);
+        if (n == 0 || field[n] || !isfinite(value)) return is_no_number(r, column, field, err);
+    }
     if (!rg_make_room((void **)&r->values[found], &r->room[found], t->n_rows + 1, sizeof(double))) return no_memory(r, err);
     r->values[found][t->n_rows] = value;
     return RG_OK;
@@ -125,6 +143,7 @@ static rg_status read_row(reader *r, rg_table *t, char *line, rg_error *err)
     int column = 0;
     for (char *rest = line; rest; column++) {
         const char *field = next_field(&rest);
+        if (!field) return beside_quotes(r, err);
         if (column == r->n_columns) return rg_fail(err, RG_BAD_INPUT, "%s: line %zu: more fields than the header's %d", r->path, r->line, r->n_columns);
         if (r->role[column] == PART) part = field;
         if (r->role[column] == PART || r->role[column] == IGNORED) continue;
@@ -139,23 +158,64 @@ static rg_status read_row(reader *r, rg_table *t, char *line, rg_error *err)
     return RG_OK;
 }
 
-static rg_status read_lines(reader *r, rg_table *t, FILE *file, rg_error *err)
+/* One chunk more behind text[n). *got 0: the file has ended. */
+static rg_status read_chunk(reader *r, size_t *got, rg_error *err)
 {
-    char *line = NULL;
-    size_t room = 0;
-    ssize_t n;
-    rg_status status = RG_OK;
-    while (!status && (n = getline(&line, &room, file)) >= 0) {
-        r->line++;
-        while (n > 0 && (line[n - 1] == '\n' || line[n - 1] == '\r')) line[--n] = 0;
-        if (strlen(line) != (size_t)n) status = rg_fail(err, RG_BAD_INPUT, "%s: line %zu holds a zero byte: this is no text", r->path, r->line);
-        else if (line[0] == '#') status = add_head(r, t, line, err);
-        else if (n == 0) continue;
-        else if (r->n_columns == 0) status = read_header(r, line, err);
-        else status = read_row(r, t, line, err);
+    if (r->at > 0) memmove(r->text, r->text + r->at, r->n - r->at);
+    r->n -= r->at;
+    r->at = 0;
+    if (r->n > MOST_RECORD) return rg_fail(err, RG_BAD_INPUT, "%s: line %zu is longer than %d MB", r->path, r->line, MOST_RECORD >> 20);
+    if (!rg_make_room((void **)&r->text, &r->text_room, r->n + CHUNK + 1, 1)) return no_memory(r, err);
+    *got = fread(r->text + r->n, 1, CHUNK, r->file);
+    r->n += *got;
+    return ferror(r->file) ? rg_fail(err, RG_BAD_INPUT, "%s: %s", r->path, strerror(errno)) : RG_OK;
+}
+
+/* The next record without its end of line: one line, or several where a quoted field holds the ends between them. NULL: there is none. */
+static rg_status next_record(reader *r, char **record, rg_error *err)
+{
+    size_t length = 0, got = 1;
+    bool quoted = false, ended = false;
+    r->line += r->n_lines;
+    r->n_lines = 1;
+    *record = NULL;
+    while (!ended && got > 0) {
+        const char *text = r->text + r->at;
+        const size_t most = r->n - r->at;
+        for (; length < most && !ended; length++) {
+            const char c = text[length];
+            if (c == '"' && text[0] != '#') quoted = !quoted;
+            ended = c == '\n' && !quoted;
+            r->n_lines += c == '\n' && quoted;
+        }
+        const rg_status status = ended ? RG_OK : read_chunk(r, &got, err);
+        if (status) return status;
     }
-    free(line);
-    if (!status && ferror(file)) status = rg_fail(err, RG_BAD_INPUT, "%s: %s", r->path, strerror(errno));
+    if (quoted) return rg_fail(err, RG_BAD_INPUT, "%s: line %zu: a quote that never ends", r->path, r->line);
+    if (length == 0) return RG_OK;
+    char *text = r->text + r->at;
+    r->at += length;
+    length -= ended;
+    while (length > 0 && text[length - 1] == '\r') length--;
+    text[length] = 0;
+    if (memchr(text, 0, length)) return rg_fail(err, RG_BAD_INPUT, "%s: line %zu holds a zero byte: this is no text", r->path, r->line);
+    *record = text;
+    return RG_OK;
+}
+
+static rg_status read_records(reader *r, rg_table *t, rg_error *err)
+{
+    size_t got;
+    rg_status status = read_chunk(r, &got, err);
+    if (!status && got >= 3 && memcmp(r->text, "\xef\xbb\xbf", 3) == 0) r->at = 3;      /* a byte order mark */
+    while (!status) {
+        char *record = NULL;
+        status = next_record(r, &record, err);
+        if (status || !record) break;
+        if (record[0] == '#') status = add_head(r, t, record, err);
+        else if (record[0] == 0) continue;
+        else status = r->n_columns == 0 ? read_header(r, record, err) : read_row(r, t, record, err);
+    }
     if (!status && r->n_columns == 0) status = rg_fail(err, RG_BAD_INPUT, "%s: no table: there is no line with the columns' names", r->path);
     if (!status && t->n_rows == 0) status = rg_fail(err, RG_BAD_INPUT, "%s: a table without rows", r->path);
     return status;
@@ -182,12 +242,12 @@ static rg_status place_columns(reader *r, rg_table *t, rg_error *err)
 rg_status rg_table_read(rg_table *out, const char *path, rg_error *err)
 {
     rg_table table = {0};
-    reader r = {.path = path};
-    FILE *file = fopen(path, "rb");
-    if (!file) return rg_fail(err, RG_BAD_INPUT, "%s: %s", path, strerror(errno));
-    rg_status status = read_lines(&r, &table, file, err);
+    reader r = {.path = path, .file = fopen(path, "rb"), .n_lines = 1};
+    if (!r.file) return rg_fail(err, RG_BAD_INPUT, "%s: %s", path, strerror(errno));
+    rg_status status = read_records(&r, &table, err);
     if (!status) status = place_columns(&r, &table, err);
-    fclose(file);
+    fclose(r.file);
+    free(r.text);
     for (int i = 0; i < r.n_columns; i++) free(r.name[i]);
     for (int i = 0; i < N_ROLES; i++) free(r.values[i]);
     if (status) rg_table_free(&table);
