@@ -32,6 +32,7 @@ void rg_progress_show(rg_progress *progress, size_t done)
     if (now - progress->shown_s < SHOW_EVERY_S || spent_s <= 0.0) return;
     const double rate = (double)done / spent_s;
     progress->shown_s = now;
+    progress->drawn = true;
     fprintf(progress->stream, "\r\033[K%zu of %zu %s, %.3g a second, ", done, progress->n, progress->what, rate);
     print_left(progress->stream, (double)(progress->n - done) / rate);
     fflush(progress->stream);
@@ -39,7 +40,8 @@ void rg_progress_show(rg_progress *progress, size_t done)
 
 void rg_progress_hide(rg_progress *progress)
 {
-    if (!progress->stream || progress->shown_s <= 0.0) return;
+    if (!progress->drawn) return;
+    progress->drawn = false;
     fputs("\r\033[K", progress->stream);
     fflush(progress->stream);
 }

@@ -10,6 +10,7 @@ typedef struct {
     const char *what;       /* such as "aspects" */
     size_t n;
     double start_s, shown_s;
+    bool drawn;             /* the line stands on the terminal */
 } rg_progress;
 
 /* Shows on stream when it is a terminal and quiet is false. */

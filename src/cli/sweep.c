@@ -168,6 +168,10 @@ static rg_status sweep_to(FILE *out, const sweep_job *job, const char *path, con
     if (!status && !job->quiet && writer.undecided_m2 > 0.0)
         fprintf(stderr, "%s: where shadows crowd, up to %.2g m2 an aspect was taken as lit or dark in pieces under lambda/8\n", path,
                 writer.undecided_m2);
+    if (status == RG_SYSTEM) {
+        const rg_error why = *err;
+        rg_fail(err, status, "%s: %s", job->out ? job->out : "standard output", why.text);
+    }
     if (status && stop) status = rg_fail(err, RG_STOPPED, "interrupted after %zu of %zu aspects", writer.done, plan.n_el * plan.n_az);
     return status;
 }
