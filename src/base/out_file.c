@@ -17,6 +17,12 @@ static rg_status cannot_write(rg_error *err, const char *path)
     return rg_fail(err, RG_SYSTEM, "%s cannot be written: %s", path, errno == ENOENT ? "its folder is not there" : strerror(errno));
 }
 
+/* An earlier write failed and later ones did not; its errno is long gone. */
+static rg_status lost_some(rg_error *err, const char *path)
+{
+    return rg_fail(err, RG_SYSTEM, "%s cannot be written: the system refused a part of it", path);
+}
+
 /* The mode that a file of fopen would have had. */
 static mode_t usual_mode(void)
 {
@@ -94,11 +100,13 @@ rg_status rg_out_file_keep(rg_out_file *file, rg_error *err)
 {
     rg_status status = RG_OK;
     if (!file->path) {
-        if (fflush(file->stream) != 0 || ferror(file->stream)) status = cannot_write(err, "standard output");
+        if (fflush(file->stream) != 0) status = cannot_write(err, "standard output");
+        else if (ferror(file->stream)) status = lost_some(err, "standard output");
         free(file);
         return status;
     }
-    if (ferror(file->stream) || fflush(file->stream) != 0 || fsync(fileno(file->stream)) != 0) status = cannot_write(err, file->path);
+    if (fflush(file->stream) != 0 || fsync(fileno(file->stream)) != 0) status = cannot_write(err, file->path);
+    else if (ferror(file->stream)) status = lost_some(err, file->path);
     if (fclose(file->stream) != 0 && !status) status = cannot_write(err, file->path);
     if (!status && rename(file->temporary, file->path) != 0) status = cannot_write(err, file->path);
     if (status) unlink(file->temporary);

@@ -138,6 +138,25 @@ START_TEST(full_disk_keeps_what_was_there)
 }
 END_TEST
 
+/* A write that failed is not forgotten when the disk has room again. */
+START_TEST(a_hole_is_told)
+{
+    rg_error err = {{0}};
+    put(path, "old\n");
+    signal(SIGXFSZ, SIG_IGN);
+    rg_out_file *file = opened();
+    setvbuf(rg_out_file_stream(file), NULL, _IONBF, 0);
+    ck_assert_int_eq(setrlimit(RLIMIT_FSIZE, &(struct rlimit){1, RLIM_INFINITY}), 0);
+    fputs("one", rg_out_file_stream(file));
+    ck_assert_int_eq(setrlimit(RLIMIT_FSIZE, &(struct rlimit){RLIM_INFINITY, RLIM_INFINITY}), 0);
+    fputs("two", rg_out_file_stream(file));
+    ck_assert_int_eq(rg_out_file_keep(file, &err), RG_SYSTEM);
+    ck_assert_msg(strstr(err.text, path) && strstr(err.text, "refused a part"), "%s", err.text);
+    holds(path, "old\n");
+    ck_assert_int_eq(n_files(), 1);
+}
+END_TEST
+
 START_TEST(closed_pipe_is_told)
 {
     int end[2];
@@ -172,6 +191,7 @@ int main(void)
     tcase_add_loop_test(tests, mode_follows_umask, 0, 3);
     tcase_add_loop_test(tests, no_such_place, 0, 2);
     tcase_add_test(tests, full_disk_keeps_what_was_there);
+    tcase_add_test(tests, a_hole_is_told);
     tcase_add_loop_test(tests, closed_pipe_is_told, 0, 2);
     suite_add_tcase(suite, tests);
     return run_suite(suite);
