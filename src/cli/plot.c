@@ -1,6 +1,7 @@
 /* plot.c - tables in, a picture out */
-#include "plot/plot.h"
 #include "cli/options.h"
+#include "plot/plot.h"
+#include "table/decimal.h"
 #include "table/table.h"
 #include <math.h>
 #include <stdlib.h>
@@ -26,6 +27,12 @@ static rg_status take_kind(void *field, const char *text, rg_error *err)
     return rg_take_string(field, text, err);
 }
 
+static rg_status take_out(void *field, const char *text, rg_error *err)
+{
+    const rg_status status = rg_plot_check_path(text, err);
+    return status ? status : rg_take_string(field, text, err);
+}
+
 static rg_status take_width(void *field, const char *text, rg_error *err)
 {
     char *end;
@@ -37,17 +44,17 @@ static rg_status take_width(void *field, const char *text, rg_error *err)
 }
 
 static const rg_option options[] = {
-    {"--out", "FILE", rg_take_string, offsetof(plot_job, out), "the picture, .svg, .png or .pdf"},
+    {"--out", "FILE", take_out, offsetof(plot_job, out), "the picture, .svg, .png or .pdf"},
     {"--kind", "KIND", take_kind, offsetof(plot_job, kind), "polar or cartesian (default: polar for a full circle)"},
-    {"--pol", "LIST", take_pol, offsetof(plot_job, pol), "of hh,vv,hv,vh (default: the table's first)"},
+    {"--pol", "LIST", take_pol, offsetof(plot_job, pol), "of hh,vv,hv,vh (default: hh and vv, or what the table has)"},
     {"--az", "ANGLE", rg_take_angle, offsetof(plot_job, az_deg), "show the cut at this azimuth"},
     {"--el", "ANGLE", rg_take_angle, offsetof(plot_job, el_deg), "show the cut at this elevation"},
     {"--freq", "FREQ", rg_take_freq, offsetof(plot_job, freq_hz), "show the cut at this frequency"},
     {"--part", "NAME", rg_take_string, offsetof(plot_job, part), "show this part of the mesh (default: the total)"},
-    {"--min", "LEVEL", rg_take_level, offsetof(plot_job, low_dbsm), "lowest level, dBsm"},
-    {"--max", "LEVEL", rg_take_level, offsetof(plot_job, high_dbsm), "highest level, dBsm"},
-    {"--title", "TEXT", rg_take_string, offsetof(plot_job, title), "a line above the picture"},
-    {"--width", "PX", take_width, offsetof(plot_job, width_px), "width in pixels or points (default 1200)"},
+    {"--min", "LEVEL", rg_take_level, offsetof(plot_job, low_dbsm), "lowest level shown, dBsm (default: from the table)"},
+    {"--max", "LEVEL", rg_take_level, offsetof(plot_job, high_dbsm), "highest level shown, dBsm (default: from the table)"},
+    {"--title", "TEXT", rg_take_string, offsetof(plot_job, title), "a line above the picture (default: the table's name, if it is one table)"},
+    {"--width", "PX", take_width, offsetof(plot_job, width_px), "width in pixels (default 1200)"},
 };
 
 /* The three axes of a table, and what the user fixed of them. */
@@ -75,32 +82,47 @@ static bool row_is_wanted(const rg_table *t, const plot_job *job, size_t row)
     return !t->part || strcmp(t->part[row], job->part ? job->part : "total") == 0;
 }
 
-/* Which axis varies among the rows that are wanted; an error where several do. */
-static rg_status find_axis(const rg_table *t, const plot_job *job, const char *path, int *x_axis, rg_error *err)
+/* "30" or "77GHz", as an option takes it; "30 deg" or "77 GHz" to read, with spaces. */
+static const char *axis_text(char text[RG_DECIMAL_ROOM + 8], int axis, double value, const char *unit_of_angle, const char *unit_of_freq)
 {
-    size_t first = t->n_rows;
+    *rg_put_shortest(text, axis == FREQ ? value * 1e-9 : value) = 0;
+    char tidy[32];
+    snprintf(tidy, sizeof tidy, "%.12g", axis == FREQ ? value * 1e-9 : value);
+    if (axis == FREQ && strlen(tidy) < strlen(text)) strcpy(text, tidy);       /* 76.123 and not what 1e-9 rounds it to */
+    return strcat(text, axis == FREQ ? unit_of_freq : unit_of_angle);
+}
+
+/* Which axis varies among the rows that are wanted; an error where several do. first: such a row. */
+static rg_status find_axis(const rg_table *t, const plot_job *job, const char *path, int *x_axis, size_t *first, rg_error *err)
+{
     bool varies[N_AXES] = {false};
+    *first = t->n_rows;
     for (size_t row = 0; row < t->n_rows; row++) {
         if (!row_is_wanted(t, job, row)) continue;
-        if (first == t->n_rows) first = row;
-        for (int axis = 0; axis < N_AXES; axis++) varies[axis] |= axis_value(t, axis, row) != axis_value(t, axis, first);
+        if (*first == t->n_rows) *first = row;
+        for (int axis = 0; axis < N_AXES; axis++) varies[axis] |= axis_value(t, axis, row) != axis_value(t, axis, *first);
     }
-    if (first == t->n_rows) return rg_fail(err, RG_BAD_VALUE, "%s has no row for what --az, --el, --freq and --part ask for", path);
+    if (*first == t->n_rows) return rg_fail(err, RG_BAD_VALUE, "%s has no row for what --az, --el, --freq and --part ask for", path);
     *x_axis = varies[AZ] ? AZ : varies[EL] ? EL : varies[FREQ] ? FREQ : AZ;
     for (int axis = 0; axis < N_AXES; axis++)
         if (varies[axis] && axis != *x_axis) {
-            const double scale = axis == FREQ ? 1e-9 : 1.0;
-            return rg_fail(err, RG_BAD_VALUE, "%s holds several cuts: pick one, such as %s %g%s", path, axis_option[axis],
-                           axis_value(t, axis, first) * scale, axis == FREQ ? "GHz" : "");
+            char text[RG_DECIMAL_ROOM + 8];
+            return rg_fail(err, RG_BAD_VALUE, "%s holds several cuts: pick one, such as %s %s", path, axis_option[axis],
+                           axis_text(text, axis, axis_value(t, axis, *first), "", "GHz"));
         }
     return RG_OK;
 }
+
+enum { NAME_ROOM = 200, PLACE_ROOM = 200, LABEL_ROOM = 500 };
 
 /* What the picture is made of; arrays live until free_curves. */
 typedef struct {
     size_t n;
     rg_curve curve[RG_PLOT_MOST_CURVES];
-    char label[RG_PLOT_MOST_CURVES][160];
+    char pol[RG_PLOT_MOST_CURVES][24];          /* "HH", or "HH = VV" */
+    char place[RG_PLOT_MOST_CURVES][PLACE_ROOM];/* what its other axes stand at */
+    const char *path[RG_PLOT_MOST_CURVES];
+    char label[RG_PLOT_MOST_CURVES][LABEL_ROOM];
     int x_axis;
 } curves;
 
@@ -112,57 +134,98 @@ static void free_curves(curves *c)
     }
 }
 
-static rg_status add_curve(curves *c, const rg_table *t, const plot_job *job, int pol, const char *label, rg_error *err)
+/* Adds the polarisation's curve; *n 0: it is the curve before, bit for bit, and needs no line of its own. */
+static rg_status add_curve(curves *c, const rg_table *t, const plot_job *job, int pol, bool first_of_table, rg_error *err)
 {
-    if (c->n == RG_PLOT_MOST_CURVES) return rg_fail(err, RG_BAD_VALUE, "more than %d curves: give fewer tables or polarisations", RG_PLOT_MOST_CURVES);
     sample *s = malloc(t->n_rows * sizeof *s);
     double *x = malloc(t->n_rows * sizeof *x), *level = malloc(t->n_rows * sizeof *level);
-    if (!s || !x || !level) {
-        free(s);
-        free(x);
-        free(level);
-        return rg_fail(err, RG_NO_MEMORY, "no memory for %zu rows", t->n_rows);
-    }
+    rg_status status = s && x && level ? RG_OK : rg_fail(err, RG_NO_MEMORY, "no memory for %zu rows", t->n_rows);
     size_t n = 0;
-    for (size_t row = 0; row < t->n_rows; row++)
+    for (size_t row = 0; row < t->n_rows && !status; row++)
         if (row_is_wanted(t, job, row))
             s[n++] = (sample){axis_value(t, c->x_axis, row) * (c->x_axis == FREQ ? 1e-9 : 1.0), t->sigma_dbsm[pol][row]};
-    qsort(s, n, sizeof *s, by_x);
+    if (!status) qsort(s, n, sizeof *s, by_x);
     for (size_t i = 0; i < n; i++) {
         x[i] = s[i].x;
         level[i] = s[i].level_dbsm;
     }
     free(s);
-    snprintf(c->label[c->n], sizeof c->label[c->n], "%s", label);
+    const char *name = rg_table_pol_name[pol], upper[] = {(char)(name[0] - 'a' + 'A'), (char)(name[1] - 'a' + 'A'), 0};
+    const rg_curve *before = c->n > 0 && !first_of_table ? &c->curve[c->n - 1] : NULL;
+    const bool same = !status && before && before->n == n && memcmp(before->x, x, n * sizeof *x) == 0 && memcmp(before->level_dbsm, level, n * sizeof *x) == 0;
+    if (same) {
+        strcat(strcat(c->pol[c->n - 1], " = "), upper);
+    } else if (!status && c->n == RG_PLOT_MOST_CURVES) {
+        status = rg_fail(err, RG_BAD_VALUE, "more than %d curves: give fewer tables or polarisations", RG_PLOT_MOST_CURVES);
+    }
+    if (same || status) {
+        free(x);
+        free(level);
+        return status;
+    }
+    strcpy(c->pol[c->n], upper);
     c->curve[c->n] = (rg_curve){c->label[c->n], n, x, level};
     c->n++;
     return RG_OK;
 }
 
-static rg_status add_table(curves *c, const char *path, const plot_job *job, bool name_file, rg_error *err)
+static void describe_place(char place[PLACE_ROOM], const rg_table *t, const plot_job *job, int x_axis, size_t row)
+{
+    static const int order[N_AXES] = {FREQ, AZ, EL};
+    place[0] = 0;
+    for (int i = 0; i < N_AXES; i++) {
+        char text[RG_DECIMAL_ROOM + 8];
+        const int axis = order[i];
+        const size_t used = strlen(place);
+        if (axis == x_axis) continue;
+        axis_text(text, axis, axis_value(t, axis, row), "\xc2\xb0", " GHz");
+        snprintf(place + used, PLACE_ROOM - used, "%s%s%s", used ? ", " : "", axis == FREQ ? "" : axis == AZ ? "azimuth " : "elevation ", text);
+    }
+    const size_t used = strlen(place);
+    if (job->part) snprintf(place + used, PLACE_ROOM - used, ", part %.80s", job->part);
+}
+
+static rg_status add_table(curves *c, const char *path, const plot_job *job, rg_error *err)
 {
     rg_table t = {0};
     int x_axis = AZ;
-    bool any = false;
+    size_t row = 0;
+    const size_t n_before = c->n;
     rg_status status = rg_table_read(&t, path, err);
     if (!status && job->part && !t.part) status = rg_fail(err, RG_BAD_VALUE, "--part %s: %s has no rows of parts; sweep with --parts", job->part, path);
-    if (!status) status = find_axis(&t, job, path, &x_axis, err);
+    if (!status) status = find_axis(&t, job, path, &x_axis, &row, err);
     if (!status && c->n > 0 && x_axis != c->x_axis)
-        status = rg_fail(err, RG_BAD_VALUE, "%s runs over another axis than the tables before it", path);
+        status = rg_fail(err, RG_BAD_VALUE, "%s runs over %s, the tables before it over %s", path, axis_name[x_axis], axis_name[c->x_axis]);
     c->x_axis = x_axis;
-    const char *slash = strrchr(path, '/');
-    for (int pol = 0; pol < RG_TABLE_N_POL && !status; pol++) {
-        char label[160], upper[3] = {(char)(rg_table_pol_name[pol][0] - 32), (char)(rg_table_pol_name[pol][1] - 32), 0};
-        const bool wanted = job->pol ? job->pol >> pol & 1u : !any;
-        if (!wanted || !t.sigma_dbsm[pol]) continue;
-        any = true;
-        snprintf(label, sizeof label, "%s%s%.100s%s%s", upper, name_file ? "  " : "", name_file ? (slash ? slash + 1 : path) : "",
-                 job->part ? "  " : "", job->part ? job->part : "");
-        status = add_curve(c, &t, job, pol, label, err);
+    unsigned there = 0;
+    for (int pol = 0; pol < RG_TABLE_N_POL; pol++) there |= t.sigma_dbsm[pol] ? 1u << pol : 0u;
+    const unsigned coplanar = there & (1u << RG_TABLE_HH | 1u << RG_TABLE_VV), wanted = job->pol ? job->pol & there : coplanar ? coplanar : there;
+    if (!status && !wanted) status = rg_fail(err, RG_BAD_VALUE, "%s has no column of the polarisations that --pol asks for", path);
+    for (int pol = 0; pol < RG_TABLE_N_POL && !status; pol++)
+        if (wanted >> pol & 1u) status = add_curve(c, &t, job, pol, c->n == n_before, err);
+    for (size_t i = n_before; i < c->n; i++) {
+        c->path[i] = path;
+        describe_place(c->place[i], &t, job, x_axis, row);
     }
-    if (!status && !any) status = rg_fail(err, RG_BAD_VALUE, "%s has no column of the polarisations that --pol asks for", path);
     rg_table_free(&t);
     return status;
+}
+
+static const char *file_name(const char *path) { return strrchr(path, '/') ? strrchr(path, '/') + 1 : path; }
+
+/* Of each curve what tells it from the others; the rest is common to all of them. */
+static void make_labels(curves *c, size_t n_tables)
+{
+    bool one_place = true, one_name = false;
+    for (size_t i = 0; i < c->n; i++) {
+        one_place &= strcmp(c->place[i], c->place[0]) == 0;
+        for (size_t k = 0; k < i; k++) one_name |= c->path[i] != c->path[k] && strcmp(file_name(c->path[i]), file_name(c->path[k])) == 0;
+    }
+    for (size_t i = 0; i < c->n; i++) {
+        const char *name = n_tables == 1 ? "" : one_name ? c->path[i] : file_name(c->path[i]);
+        snprintf(c->label[i], LABEL_ROOM, "%s%s%.200s%s%s", c->pol[i], *name ? "  " : "", name, one_place ? "" : "  ", one_place ? "" : c->place[i]);
+    }
+    if (!one_place) c->place[0][0] = 0;
 }
 
 static bool is_full_circle(const curves *c)
@@ -173,23 +236,33 @@ static bool is_full_circle(const curves *c)
     return span + 1.5 * span / (double)(first->n - 1) >= 360.0;
 }
 
+static rg_status draw(curves *c, const plot_job *job, size_t n_tables, rg_error *err)
+{
+    char title[NAME_ROOM] = "";
+    const bool polar = job->kind ? strcmp(job->kind, "polar") == 0 : is_full_circle(c);
+    if (polar && c->x_axis != AZ) return rg_fail(err, RG_BAD_VALUE, "--kind polar needs a table over azimuth, this one runs over %s", axis_name[c->x_axis]);
+    make_labels(c, n_tables);
+    if (n_tables == 1) snprintf(title, sizeof title, "%.*s", (int)strcspn(file_name(c->path[0]), "."), file_name(c->path[0]));
+    char note[PLACE_ROOM + 40];
+    snprintf(note, sizeof note, "%s%s%s", polar ? "radar cross section over azimuth" : "", polar && c->place[0][0] ? ", " : "", c->place[0]);
+    const rg_plot plot = {.kind = polar ? RG_PLOT_POLAR : RG_PLOT_CARTESIAN, .title = job->title ? job->title : title, .note = note,
+                          .x_name = axis_name[c->x_axis], .x_is_angle = c->x_axis != FREQ, .n_curves = c->n, .curve = c->curve,
+                          .low_dbsm = job->low_dbsm, .high_dbsm = job->high_dbsm, .width_px = job->width_px};
+    return rg_plot_write(&plot, job->out, err);
+}
+
 static rg_status run(int argc, char **argv, FILE *out, rg_error *err)
 {
-    plot_job job = {.title = "", .low_dbsm = NAN, .high_dbsm = NAN, .az_deg = NAN, .el_deg = NAN, .freq_hz = NAN, .width_px = 1200};
+    plot_job job = {.low_dbsm = NAN, .high_dbsm = NAN, .az_deg = NAN, .el_deg = NAN, .freq_hz = NAN, .width_px = 1200};
     const char *path[MOST_TABLES];
     size_t n_tables = 0;
     curves c = {0};
-    (void)out;
+    (void)out;                                              /* the picture goes where --out says */
     rg_status status = rg_take_options(&rg_command_plot, argc, argv, &job, path, 1, MOST_TABLES, &n_tables, err);
     if (!status && !job.out) status = rg_fail(err, RG_BAD_VALUE, "no picture named: add --out FILE.svg, .png or .pdf");
-    for (size_t i = 0; i < n_tables && !status; i++) status = add_table(&c, path[i], &job, n_tables > 1, err);
-    if (!status) {
-        const bool polar = job.kind ? strcmp(job.kind, "polar") == 0 : is_full_circle(&c);
-        if (polar && c.x_axis != AZ) status = rg_fail(err, RG_BAD_VALUE, "--kind polar needs a table over azimuth");
-        const rg_plot plot = {.kind = polar ? RG_PLOT_POLAR : RG_PLOT_CARTESIAN, .title = job.title, .x_name = axis_name[c.x_axis],
-                              .n_curves = c.n, .curve = c.curve, .low_dbsm = job.low_dbsm, .high_dbsm = job.high_dbsm, .width_px = job.width_px};
-        if (!status) status = rg_plot_write(&plot, job.out, err);
-    }
+    if (!status && job.low_dbsm >= job.high_dbsm) status = rg_fail(err, RG_BAD_VALUE, "--min %g must be below --max %g", job.low_dbsm, job.high_dbsm);
+    for (size_t i = 0; i < n_tables && !status; i++) status = add_table(&c, path[i], &job, err);
+    if (!status) status = draw(&c, &job, n_tables, err);
     free_curves(&c);
     return status;
 }
