@@ -92,6 +92,34 @@ static const char *axis_text(char text[RG_DECIMAL_ROOM + 8], int axis, double va
     return strcat(text, axis == FREQ ? unit_of_freq : unit_of_angle);
 }
 
+/* Why no row is wanted, by what would be right: the nearest value of an axis of which the table has not this one, or the parts. */
+static rg_status no_row(const rg_table *t, const plot_job *job, const char *path, rg_error *err)
+{
+    const double fixed[N_AXES] = {job->az_deg, job->el_deg, job->freq_hz};
+    for (int axis = 0; axis < N_AXES; axis++) {
+        double nearest = INFINITY;
+        if (isnan(fixed[axis])) continue;
+        for (size_t row = 0; row < t->n_rows; row++)
+            if (fabs(axis_value(t, axis, row) - fixed[axis]) < fabs(nearest - fixed[axis])) nearest = axis_value(t, axis, row);
+        char text[RG_DECIMAL_ROOM + 8], there[RG_DECIMAL_ROOM + 8];
+        if (!same_value(nearest, fixed[axis]))
+            return rg_fail(err, RG_BAD_VALUE, "%s has nothing at %s %s; the nearest is %s", path, axis_option[axis],
+                           axis_text(text, axis, fixed[axis], "", "GHz"), axis_text(there, axis, nearest, "", "GHz"));
+    }
+    const char *part = job->part ? job->part : "total";
+    for (size_t row = 0; row < t->n_rows && t->part; row++)
+        if (strcmp(t->part[row], part) == 0) return rg_fail(err, RG_BAD_VALUE, "%s has each of --az, --el and --freq, but nowhere together", path);
+    char parts[160] = "";
+    for (size_t row = 0, last = 0; t->part && row < t->n_rows && row < 1000; row++) {
+        const size_t used = strlen(parts);
+        if (row > 0 && strcmp(t->part[row], t->part[0]) == 0) break;           /* the next aspect */
+        if (row > 0 && strcmp(t->part[row], t->part[last]) == 0) continue;
+        snprintf(parts + used, sizeof parts - used, "%s%s", used ? ", " : "", t->part[row]);
+        last = row;
+    }
+    return rg_fail(err, RG_BAD_VALUE, "%s has no part '%.60s'; it has %s", path, part, parts);
+}
+
 /* Which axis varies among the rows that are wanted; an error where several do. first: such a row. */
 static rg_status find_axis(const rg_table *t, const plot_job *job, const char *path, int *x_axis, size_t *first, rg_error *err)
 {
@@ -102,7 +130,7 @@ static rg_status find_axis(const rg_table *t, const plot_job *job, const char *p
         if (*first == t->n_rows) *first = row;
         for (int axis = 0; axis < N_AXES; axis++) varies[axis] |= axis_value(t, axis, row) != axis_value(t, axis, *first);
     }
-    if (*first == t->n_rows) return rg_fail(err, RG_BAD_VALUE, "%s has no row for what --az, --el, --freq and --part ask for", path);
+    if (*first == t->n_rows) return no_row(t, job, path, err);
     *x_axis = varies[AZ] ? AZ : varies[EL] ? EL : varies[FREQ] ? FREQ : AZ;
     for (int axis = 0; axis < N_AXES; axis++)
         if (varies[axis] && axis != *x_axis) {
@@ -200,7 +228,12 @@ static rg_status add_table(curves *c, const char *path, const plot_job *job, rg_
     unsigned there = 0;
     for (int pol = 0; pol < RG_TABLE_N_POL; pol++) there |= t.sigma_dbsm[pol] ? 1u << pol : 0u;
     const unsigned coplanar = there & (1u << RG_TABLE_HH | 1u << RG_TABLE_VV), wanted = job->pol ? job->pol & there : coplanar ? coplanar : there;
-    if (!status && !wanted) status = rg_fail(err, RG_BAD_VALUE, "%s has no column of the polarisations that --pol asks for", path);
+    if (!status && !wanted) {
+        char has[32] = "";
+        for (int pol = 0; pol < RG_TABLE_N_POL; pol++)
+            if (there >> pol & 1u) strcat(strcat(has, *has ? "," : ""), rg_table_pol_name[pol]);
+        status = rg_fail(err, RG_BAD_VALUE, "%s has no levels of the polarisations that --pol asks for; it has %s", path, has);
+    }
     for (int pol = 0; pol < RG_TABLE_N_POL && !status; pol++)
         if (wanted >> pol & 1u) status = add_curve(c, &t, job, pol, c->n == n_before, err);
     for (size_t i = n_before; i < c->n; i++) {

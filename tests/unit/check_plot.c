@@ -73,9 +73,12 @@ START_TEST(limits_show_the_peak_and_most_of_the_rest)
         ck_assert_double_eq(high, known[i].want_high);
         ck_assert_double_eq(low, known[i].want_low);
     }
-    for (size_t k = 0; k < N; k++) level[0][k] = -5.0 - 0.01 * (double)k;       /* a bottom twentieth under -39.2 */
+    for (size_t k = 0; k < N; k++) level[0][k] = k % 25 == 0 ? -58.0 : k == 1 ? -1.0 : -45.0;     /* 4 % are left out */
     rg_plot_limits(1, curve, &low, &high);
-    ck_assert_double_eq(low, -40.0);
+    ck_assert_double_eq(low, -50.0);
+    for (size_t k = 0; k < N; k++) level[0][k] = k % 16 == 0 ? -58.0 : k == 1 ? -1.0 : -45.0;     /* 6 % are not */
+    rg_plot_limits(1, curve, &low, &high);
+    ck_assert_double_eq(low, -60.0);
     for (size_t k = 0; k < N; k++) level[1][k] = 9.9;                           /* the highest of all curves */
     rg_plot_limits(2, curve, &low, &high);
     ck_assert_double_eq(high, 10.0);
