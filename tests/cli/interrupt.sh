@@ -16,3 +16,16 @@ for signal in INT TERM HUP; do
     echo "$signal: $code $soon, $(grep -c 'roadglint sweep: interrupted after [0-9]* of 36000 aspects' told) line, $(cat table.csv)"
     ls
 done
+# A mesh of a million facets is still being read when the signal comes (on a machine that is faster than that, the sweep has begun).
+rm told sphere.ply
+roadglint shape sphere --radius 0.3m --sagitta 0.002mm --out sphere.obj 2>/dev/null
+roadglint sweep sphere.obj --freq 77GHz --az 0:359.99:0.01 --quiet --out new.csv 2>told &
+n=0
+while ! grep -q '^SigCgt:.*[2367abef]$' "/proc/$!/status" && [ $n -lt 300 ]; do    # until it listens for SIGINT
+    sleep 0.01
+    n=$((n + 1))
+done
+kill -INT $!
+wait $!
+echo "reading: $? $(grep -c '^roadglint sweep: interrupted' told) line"
+ls
