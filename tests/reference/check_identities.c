@@ -1,0 +1,351 @@
+/* check_identities.c - what must hold for any target, one answer reached in two ways */
+#include "world.h"
+
+static const double freq_hz = 77e9;
+static const unsigned all = RG_SURFACE | RG_EDGE | RG_BOUNCE;
+/* each alone, so that what fails has a name, and one cannot drown in another */
+enum { N_SETS = 3 };
+static const unsigned mechanism_sets[N_SETS] = {RG_SURFACE, RG_EDGE, RG_BOUNCE};
+static const char *const set_name[N_SETS] = {"surface", "edge", "bounce"};
+
+/* A corner, a box and a tilted plate with a step before them: faces that light, hide and mirror each other. Invented. */
+static soup awkward_target(void)
+{
+    soup s = {0};
+    add_box(&s, (vec3){-0.05, -0.08, -0.06}, (vec3){0.02, 0.03, 0.05});
+    add_box(&s, (vec3){0.05, -0.02, -0.01}, (vec3){0.06, 0.015, 0.02});
+    add_quad(&s, (vec3){0, 0.05, -0.05}, (vec3){0.03, 0.11, -0.04}, (vec3){0.04, 0.1, 0.05}, (vec3){0.01, 0.04, 0.04});
+    add_triangle(&s, (vec3){0, 0, 0.09}, (vec3){0.07, 0.02, 0.08}, (vec3){0.01, 0.06, 0.12});
+    return s;
+}
+
+static soup copy_of(const soup *s)
+{
+    soup copy = {0};
+    for (size_t i = 0; i < s->n; i++) add_triangle(&copy, vec3_from(s->corner_m[i][0]), vec3_from(s->corner_m[i][1]), vec3_from(s->corner_m[i][2]));
+    return copy;
+}
+
+static void move(soup *s, vec3 d)
+{
+    for (size_t i = 0; i < 3 * s->n; i++) {
+        double *p = s->corner_m[i / 3][i % 3];
+        p[0] += d.x;
+        p[1] += d.y;
+        p[2] += d.z;
+    }
+}
+
+static void turn_about_z(soup *s, double angle_rad)
+{
+    const double c = cos(angle_rad), d = sin(angle_rad);
+    for (size_t i = 0; i < 3 * s->n; i++) {
+        double *p = s->corner_m[i / 3][i % 3];
+        const double x = p[0], y = p[1];
+        p[0] = c * x - d * y;
+        p[1] = d * x + c * y;
+    }
+}
+
+static double area_m2(const soup *s)
+{
+    double sum = 0.0;
+    for (size_t i = 0; i < s->n; i++) {
+        const vec3 a = vec3_from(s->corner_m[i][0]), b = vec3_from(s->corner_m[i][1]), c = vec3_from(s->corner_m[i][2]);
+        sum += 0.5 * vec3_norm(vec3_cross(vec3_sub(b, a), vec3_sub(c, a)));
+    }
+    return sum;
+}
+
+enum { N_ASPECTS = 12 };
+
+static void random_aspect(uint64_t *state, double *az_deg, double *el_deg)
+{
+    *az_deg = random_between(state, -180.0, 180.0);
+    *el_deg = random_between(state, -80.0, 80.0);
+}
+
+/* Errors are held against the amplitude of all facets in phase, k A/sqrt(pi): that is what rounding of a phase can cost. */
+START_TEST(moving_turns_the_phase)
+{
+    static const double d_m[][3] = {{0.1, 0, 0}, {1.5, -2.25, 0.75}, {-12.3, 45.6, 7.89}};
+    const vec3 d = vec3_from(d_m[_i / N_SETS]);
+    const unsigned mechanisms = mechanism_sets[_i % N_SETS];
+    uint64_t state = 11;
+    soup s = awkward_target(), moved = copy_of(&s);
+    const double peak_m = wave_number(freq_hz) / ROOT_PI * area_m2(&s);
+    move(&moved, d);
+    world w = world_of_soup(&s), v = world_of_soup(&moved);
+    for (int i = 0; i < N_ASPECTS; i++) {
+        double az, el;
+        double complex at[RG_N_POL], there[RG_N_POL];
+        random_aspect(&state, &az, &el);
+        scatter(&w, az, el, freq_hz, mechanisms, at);
+        scatter(&v, az, el, freq_hz, mechanisms, there);
+        const double phase = 2.0 * wave_number(freq_hz) * vec3_dot(toward(aspect_deg(az, el)), d);
+        for (int pol = 0; pol < RG_N_POL; pol++) {
+            const double off = cabs(there[pol] - at[pol] * CMPLX(cos(phase), sin(phase)));
+            ck_assert_msg(off <= 1e-9 * peak_m, "%s moved by (%g, %g, %g), az %g el %g, pol %d: off by %g of the peak", set_name[_i % N_SETS], d.x, d.y, d.z, az, el, pol,
+                          off / peak_m);
+        }
+    }
+    free_world(&w);
+    free_world(&v);
+}
+END_TEST
+
+/* 4,000,000 m from the origin (map coordinates) doubles are 2^-31 m apart: each corner is off by up to half of that across each axis, 0.75 urad
+ * of two-way phase, and the mesh is not the same mesh. What is expected: the level within 20 log10(1 + 2e-6 peak/level). The phase
+ * turns by 2k s.d, 1.3e10 rad, of which one rounding of s.d leaves some 1e-6 rad: it holds to 1e-5. Here d is exact in doubles. */
+START_TEST(moving_very_far_costs_what_doubles_cost)
+{
+    const vec3 d = {4e6, -4e6, 0.0};
+    uint64_t state = 12;
+    soup s = awkward_target(), moved = copy_of(&s);
+    const double k = wave_number(freq_hz), peak_m = k / ROOT_PI * area_m2(&s);
+    move(&moved, d);
+    world w = world_of_soup(&s), v = world_of_soup(&moved);
+    for (int i = 0; i < N_ASPECTS; i++) {
+        double az, el;
+        double complex at[RG_N_POL], there[RG_N_POL];
+        random_aspect(&state, &az, &el);
+        scatter(&w, az, el, freq_hz, RG_SURFACE, at);
+        scatter(&v, az, el, freq_hz, RG_SURFACE, there);
+        const double off = fabs(cabs(there[RG_HH]) - cabs(at[RG_HH]));
+        ck_assert_msg(off <= 2e-6 * peak_m, "az %g el %g: magnitude off by %g of the peak", az, el, off / peak_m);
+    }
+    free_world(&w);
+    free_world(&v);
+}
+END_TEST
+
+static double off_db(double complex a, double complex b) { return fabs(20.0 * log10(cabs(a) / cabs(b))); }
+
+START_TEST(turning_with_the_radar_changes_nothing)
+{
+    const unsigned mechanisms = mechanism_sets[_i];
+    uint64_t state = 13;
+    for (int i = 0; i < N_ASPECTS; i++) {
+        double az, el;
+        const double turn_deg = random_between(&state, -180.0, 180.0);
+        double complex at[RG_N_POL], turned[RG_N_POL];
+        soup s = awkward_target(), t = copy_of(&s);
+        turn_about_z(&t, turn_deg * RAD_PER_DEG);
+        world w = world_of_soup(&s), v = world_of_soup(&t);
+        random_aspect(&state, &az, &el);
+        scatter(&w, az, el, freq_hz, mechanisms, at);
+        scatter(&v, az + turn_deg, el, freq_hz, mechanisms, turned);
+        for (int pol = 0; pol < RG_N_POL; pol++)
+            if (cabs(at[pol]) > 1e-8)
+                ck_assert_msg(off_db(turned[pol], at[pol]) <= 1e-6, "%s turned by %g, az %g el %g, pol %d: %.9f dB", set_name[_i], turn_deg, az, el, pol,
+                              off_db(turned[pol], at[pol]));
+        free_world(&w);
+        free_world(&v);
+    }
+}
+END_TEST
+
+/* Each facet in two, from the middle of its longest edge (so that twins stay joined: both sides of an edge cut it in the same place). */
+static soup cut_in_two(const soup *s)
+{
+    soup cut = {0};
+    for (size_t i = 0; i < s->n; i++) {
+        vec3 p[3];
+        int longest = 0;
+        double length[3];
+        for (int c = 0; c < 3; c++) p[c] = vec3_from(s->corner_m[i][c]);
+        for (int c = 0; c < 3; c++) {
+            length[c] = vec3_norm(vec3_sub(p[(c + 1) % 3], p[c]));
+            if (length[c] > length[longest]) longest = c;
+        }
+        const vec3 a = p[longest], b = p[(longest + 1) % 3], c = p[(longest + 2) % 3], m = vec3_scale(vec3_add(a, b), 0.5);
+        add_triangle(&cut, a, m, c);
+        add_triangle(&cut, m, b, c);
+    }
+    return cut;
+}
+
+/* The halves' common edge is flat and carries no fringe currents: the identity holds for all mechanisms. */
+START_TEST(cutting_facets_changes_nothing)
+{
+    const unsigned mechanisms = mechanism_sets[_i];
+    uint64_t state = 14;
+    soup s = awkward_target(), cut = cut_in_two(&s);
+    const double peak_m = wave_number(freq_hz) / ROOT_PI * area_m2(&s);
+    world w = world_of_soup(&s), v = world_of_soup(&cut);
+    for (int i = 0; i < 2 * N_ASPECTS; i++) {
+        double az, el;
+        double complex at[RG_N_POL], there[RG_N_POL];
+        random_aspect(&state, &az, &el);
+        scatter(&w, az, el, freq_hz, mechanisms, at);
+        scatter(&v, az, el, freq_hz, mechanisms, there);
+        for (int pol = 0; pol < RG_N_POL; pol++)
+            ck_assert_msg(cabs(there[pol] - at[pol]) <= 1e-9 * peak_m, "%s cut, az %g el %g, pol %d: off by %g of the peak", set_name[_i], az, el, pol,
+                          cabs(there[pol] - at[pol]) / peak_m);
+    }
+    free_world(&w);
+    free_world(&v);
+}
+END_TEST
+
+START_TEST(order_of_facets_changes_nothing)
+{
+    const unsigned mechanisms = mechanism_sets[_i];
+    uint64_t state = 15;
+    soup s = awkward_target(), mixed = copy_of(&s);
+    const double peak_m = wave_number(freq_hz) / ROOT_PI * area_m2(&s);
+    for (size_t i = mixed.n - 1; i > 0; i--) {
+        const size_t j = (size_t)random_between(&state, 0.0, (double)(i + 1));
+        double keep[3][3];
+        memcpy(keep, mixed.corner_m[i], sizeof keep);
+        memcpy(mixed.corner_m[i], mixed.corner_m[j], sizeof keep);
+        memcpy(mixed.corner_m[j], keep, sizeof keep);
+    }
+    world w = world_of_soup(&s), v = world_of_soup(&mixed);
+    for (int i = 0; i < N_ASPECTS; i++) {
+        double az, el;
+        double complex at[RG_N_POL], there[RG_N_POL];
+        random_aspect(&state, &az, &el);
+        scatter(&w, az, el, freq_hz, mechanisms, at);
+        scatter(&v, az, el, freq_hz, mechanisms, there);
+        for (int pol = 0; pol < RG_N_POL; pol++)
+            ck_assert_msg(cabs(there[pol] - at[pol]) <= 1e-12 * peak_m, "%s in another order, az %g el %g, pol %d: off by %g of the peak", set_name[_i], az, el, pol,
+                          cabs(there[pol] - at[pol]) / peak_m);
+    }
+    free_world(&w);
+    free_world(&v);
+}
+END_TEST
+
+/* A flat sheet in x = 0, seen from (az, el) and from its mirror image behind, (180 - az, el): the same amplitude, since the phase at x = 0
+ * is the same; HV changes its sign, and is nothing. */
+START_TEST(a_sheet_has_two_like_sides)
+{
+    uint64_t state = 16;
+    soup s = {0};
+    add_triangle(&s, (vec3){0, -0.03, -0.02}, (vec3){0, 0.05, -0.01}, (vec3){0, 0.01, 0.06});
+    world w = world_of_soup(&s);
+    for (int i = 0; i < N_ASPECTS; i++) {
+        const double az = random_between(&state, -85.0, 85.0), el = random_between(&state, -80.0, 80.0);
+        double complex before[RG_N_POL], behind[RG_N_POL];
+        for (int m = 0; m < N_SETS; m++) {
+            scatter(&w, az, el, freq_hz, mechanism_sets[m], before);
+            scatter(&w, 180.0 - az, el, freq_hz, mechanism_sets[m], behind);
+            ck_assert_double_le(cabs(before[RG_HH] - behind[RG_HH]), 1e-10);
+            ck_assert_double_le(cabs(before[RG_VV] - behind[RG_VV]), 1e-10);
+            ck_assert_double_le(cabs(before[RG_HV] + behind[RG_HV]), 1e-10);
+        }
+    }
+    free_world(&w);
+}
+END_TEST
+
+START_TEST(a_cube_is_its_visible_faces)
+{
+    uint64_t state = 17;
+    const double a = 0.07, k = wave_number(freq_hz);
+    for (int i = 0; i < N_ASPECTS; i++) {
+        double az, el;
+        random_aspect(&state, &az, &el);
+        const vec3 s = toward(aspect_deg(az, el));
+        const double x = s.x > 0 ? a : -a, y = s.y > 0 ? a : -a, z = s.z > 0 ? a : -a;
+        soup cube = {0}, face[3] = {{0}};
+        double complex at[RG_N_POL], sum = 0.0;
+        add_box(&cube, (vec3){-a, -a, -a}, (vec3){a, a, a});
+        add_quad(&face[0], (vec3){x, -a, -a}, (vec3){x, a, -a}, (vec3){x, a, a}, (vec3){x, -a, a});
+        add_quad(&face[1], (vec3){-a, y, -a}, (vec3){a, y, -a}, (vec3){a, y, a}, (vec3){-a, y, a});
+        add_quad(&face[2], (vec3){-a, -a, z}, (vec3){a, -a, z}, (vec3){a, a, z}, (vec3){-a, a, z});
+        for (int f = 0; f < 3; f++) {
+            world w = world_of_soup(&face[f]);
+            scatter(&w, az, el, freq_hz, RG_SURFACE, at);
+            sum += at[RG_HH];
+            free_world(&w);
+        }
+        world w = world_of_soup(&cube);
+        /* convex: nothing bounces, so surface and bounce together are the same three faces */
+        for (int m = 0; m < 2; m++) {
+            scatter(&w, az, el, freq_hz, m ? RG_SURFACE | RG_BOUNCE : RG_SURFACE, at);
+            ck_assert_msg(cabs(at[RG_HH] - sum) <= 1e-9 * k / ROOT_PI * 12.0 * a * a, "az %g el %g: %g off", az, el, cabs(at[RG_HH] - sum));
+        }
+        free_world(&w);
+    }
+}
+END_TEST
+
+/* Surface alone: |S| <= (k/sqrt(pi)) Int |n.s| dA over what is lit, which is at most the area of the bounding outline: no level is over 4 pi
+ * A^2/lambda^2. (No such bound holds for edges and bounces: a dihedral seen from its rim returns more than its outline.) */
+START_TEST(no_level_over_that_of_the_outline)
+{
+    uint64_t state = 18;
+    soup s = awkward_target(), facets = copy_of(&s);
+    world w = world_of_soup(&s);
+    for (int i = 0; i < 200; i++) {
+        double az, el, outline_m2 = 0.0;
+        double complex at[RG_N_POL];
+        random_aspect(&state, &az, &el);
+        if (i % 4 == 0) az = el = 0.0 + i / 100.0 * 1e-3;              /* where the boxes' fronts are nearly in phase */
+        const vec3 view = toward(aspect_deg(az, el));
+        /* overlap in the outline only makes the true bound lower: the boxes count by the half of them that faces the radar */
+        for (size_t f = 0; f < facets.n; f++) {
+            const vec3 a = vec3_from(facets.corner_m[f][0]), b = vec3_from(facets.corner_m[f][1]), c = vec3_from(facets.corner_m[f][2]);
+            const double shown = 0.5 * vec3_dot(vec3_cross(vec3_sub(b, a), vec3_sub(c, a)), view);
+            const bool of_box = f < 24;
+            outline_m2 += of_box ? fmax(shown, 0.0) : fabs(shown);
+        }
+        scatter(&w, az, el, freq_hz, RG_SURFACE, at);
+        ck_assert_msg(cabs(at[RG_HH]) <= wave_number(freq_hz) / ROOT_PI * outline_m2 * (1.0 + 1e-12), "az %g el %g: %.4f dBsm, bound %.4f", az, el,
+                      rg_dbsm(at[RG_HH]), rg_dbsm(wave_number(freq_hz) / ROOT_PI * outline_m2));
+    }
+    free(facets.corner_m);
+    free_world(&w);
+}
+END_TEST
+
+/* A plate behind a plate of the same size: the outline is one of them, and at normal incidence the bound is reached. */
+START_TEST(the_bound_counts_what_is_lit_once)
+{
+    soup s = {0};
+    double complex at[RG_N_POL];
+    add_rectangle(&s, 0.0, -0.05, -0.05, 0.05, 0.05, 1);
+    add_rectangle(&s, -0.25 * LIGHT_SPEED_M_PER_S / freq_hz * 4.0, -0.05, -0.05, 0.05, 0.05, 1);    /* a wavelength behind: in phase */
+    world w = world_of_soup(&s);
+    scatter(&w, 0.0, 0.0, freq_hz, RG_SURFACE, at);
+    ck_assert_double_eq_tol(cabs(at[RG_HH]) / (wave_number(freq_hz) / ROOT_PI * 0.01), 1.0, 1e-12);
+    free_world(&w);
+}
+END_TEST
+
+START_TEST(what_is_received_may_be_sent)
+{
+    uint64_t state = 19;
+    soup s = awkward_target();
+    world w = world_of_soup(&s);
+    for (int i = 0; i < N_ASPECTS; i++) {
+        double az, el;
+        double complex at[RG_N_POL];
+        random_aspect(&state, &az, &el);
+        scatter(&w, az, el, freq_hz, all, at);
+        ck_assert(at[RG_HV] == at[RG_VH]);
+    }
+    free_world(&w);
+}
+END_TEST
+
+int main(void)
+{
+    Suite *suite = suite_create("identities");
+    TCase *tests = tcase_create("identities");
+    tcase_set_timeout(tests, 120);
+    tcase_add_loop_test(tests, moving_turns_the_phase, 0, 3 * N_SETS);
+    tcase_add_test(tests, moving_very_far_costs_what_doubles_cost);
+    tcase_add_loop_test(tests, turning_with_the_radar_changes_nothing, 0, N_SETS);
+    tcase_add_loop_test(tests, cutting_facets_changes_nothing, 0, N_SETS);
+    tcase_add_loop_test(tests, order_of_facets_changes_nothing, 0, N_SETS);
+    tcase_add_test(tests, a_sheet_has_two_like_sides);
+    tcase_add_test(tests, a_cube_is_its_visible_faces);
+    tcase_add_test(tests, no_level_over_that_of_the_outline);
+    tcase_add_test(tests, the_bound_counts_what_is_lit_once);
+    tcase_add_test(tests, what_is_received_may_be_sent);
+    suite_add_tcase(suite, tests);
+    return run_suite(suite);
+}
