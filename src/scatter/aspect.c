@@ -4,6 +4,7 @@
 #include "base/level.h"
 #include "base/sum.h"
 #include "scatter/bounce.h"
+#include "scatter/cover.h"
 #include "scatter/edge.h"
 #include "scatter/lit.h"
 #include "scatter/reflection.h"
@@ -41,6 +42,7 @@ struct rg_aspect_bench {
     rg_aspect_job job;
     double grain_m;
     rg_seen seen;
+    rg_cover *cover;                /* NULL where no mechanism asks for facets */
     int n_threads;
     worker *workers;                /* [n_threads] */
     amplitude *group;               /* [GROUP][n_freq]: each block of the group */
@@ -77,6 +79,7 @@ rg_status rg_aspect_bench_new(rg_aspect_bench **out, const rg_scene *scene, cons
     bench->part = calloc(job->n_freq, sizeof *bench->part);
     bench->total = calloc(job->n_freq, sizeof *bench->total);
     bool enough = bench->workers && bench->group && bench->part && bench->total && rg_seen_new(&bench->seen, scene->mesh, err) == RG_OK;
+    if (enough && job->mechanisms & (RG_SURFACE | RG_BOUNCE)) enough = rg_cover_new(&bench->cover, scene->mesh, err) == RG_OK;
     for (int t = 0; t < n_threads && enough; t++) {
         worker *w = &bench->workers[t];
         enough = (w->lit_scratch = rg_lit_scratch_new()) && (w->bounce_scratch = rg_bounce_scratch_new()) &&
@@ -105,6 +108,7 @@ void rg_aspect_bench_free(rg_aspect_bench *bench)
     }
     free(bench->workers);
     rg_seen_free(&bench->seen);
+    rg_cover_free(bench->cover);
     free(bench->group);
     free(bench->part);
     free(bench->total);
@@ -121,12 +125,12 @@ static rg_status find_pieces(const rg_aspect_bench *bench, const rg_block *block
         rg_face face;
         if (!rg_face_seen(&face, bench->scene->mesh, &bench->seen, block->first + i)) continue;
         w->lit.n = 0;
-        enough = rg_lit_part(bench->scene, &bench->seen, &face, &rg_whole_facet, NULL, bench->grain_m, w->lit_scratch, &w->lit);
+        enough = rg_lit_from_afar(bench->scene, &bench->seen, bench->cover, &face, &rg_whole_facet, bench->grain_m, w->lit_scratch, &w->lit);
         for (size_t k = 0; k < w->lit.n && enough; k++) {
             const rg_polygon *lit = &w->lit.polygon[k];
             if (surface) enough = rg_pieces_add(&w->pieces, &face, lit);
             if (bounce && enough)
-                enough = rg_bounce_follow(bench->scene, &bench->seen, &face, lit, bench->job.n_bounces, bench->grain_m, w->lit_scratch,
+                enough = rg_bounce_follow(bench->scene, &bench->seen, bench->cover, &face, lit, bench->job.n_bounces, bench->grain_m, w->lit_scratch,
                                           w->bounce_scratch, &w->footprints);
         }
     }
@@ -248,6 +252,7 @@ rg_status rg_aspect_run(rg_aspect_bench *bench, const rg_view *view, double comp
     const size_t n_freq = bench->job.n_freq;
     rg_status status = RG_OK;
     rg_seen_turn(&bench->seen, scene->mesh, view);
+    if (bench->cover) rg_cover_draw(bench->cover, scene->mesh, &bench->seen);
     memset(bench->part, 0, n_freq * sizeof *bench->part);
     memset(bench->total, 0, n_freq * sizeof *bench->total);
     for (size_t first = 0; first < scene->n_blocks && !status; first += GROUP) {

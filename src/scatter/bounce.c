@@ -24,6 +24,7 @@ struct rg_bounce_scratch {
 typedef struct {
     const rg_scene *scene;
     const rg_seen *seen;
+    const rg_cover *cover;
     int n_bounces;
     double grain_m;
     rg_lit_scratch *lit_scratch;
@@ -172,7 +173,7 @@ static bool radiate(const bounce_job *job, const rg_face *target, const placed_f
     const rg_view *view = &job->seen->view;
     if (!rg_face_seen(&face, job->scene->mesh, job->seen, target->index) || face.vertex[1] != target->vertex[1]) return true;
     back->n = 0;
-    if (!rg_lit_part(job->scene, job->seen, &face, footprint, NULL, job->grain_m, job->lit_scratch, back)) return false;
+    if (!rg_lit_from_afar(job->scene, job->seen, job->cover, &face, footprint, job->grain_m, job->lit_scratch, back)) return false;
 
     const vec3 n = p->normal, to_radar = vec3_add(view->s, wave->u), receive[2] = {view->h, view->v};
     double w[2][2];
@@ -249,10 +250,10 @@ static bool follow(const bounce_job *job, const rg_face *face, const rg_polygon 
     return true;
 }
 
-bool rg_bounce_follow(const rg_scene *scene, const rg_seen *seen, const rg_face *face, const rg_polygon *lit, int n_bounces,
-                      double grain_m, rg_lit_scratch *lit_scratch, rg_bounce_scratch *scratch, rg_footprints *footprints)
+bool rg_bounce_follow(const rg_scene *scene, const rg_seen *seen, const rg_cover *cover, const rg_face *face, const rg_polygon *lit,
+                      int n_bounces, double grain_m, rg_lit_scratch *lit_scratch, rg_bounce_scratch *scratch, rg_footprints *footprints)
 {
-    const bounce_job job = {scene, seen, n_bounces, grain_m, lit_scratch, scratch, footprints};
+    const bounce_job job = {scene, seen, cover, n_bounces, grain_m, lit_scratch, scratch, footprints};
     const plane_wave incident = {.u = seen->view.s, .e = {seen->view.h, seen->view.v}};
     return n_bounces < 2 || follow(&job, face, lit, &incident, 1);
 }

@@ -30,11 +30,12 @@ void rg_bounce_scratch_free(rg_bounce_scratch *scratch);     /* takes NULL */
  * physical optics of the wave that arrives; the way back of the others is blocked.
  *
  *    seen       the radar's view
+ *    cover      as drawn for it
  *    face       the facet, as the radar sees it
  *    lit        the lit part of it
  *
  * False without memory. */
-bool rg_bounce_follow(const rg_scene *scene, const rg_seen *seen, const rg_face *face, const rg_polygon *lit, int n_bounces,
-                      double grain_m, rg_lit_scratch *lit_scratch, rg_bounce_scratch *scratch, rg_footprints *footprints);
+bool rg_bounce_follow(const rg_scene *scene, const rg_seen *seen, const rg_cover *cover, const rg_face *face, const rg_polygon *lit,
+                      int n_bounces, double grain_m, rg_lit_scratch *lit_scratch, rg_bounce_scratch *scratch, rg_footprints *footprints);
 
 #endif

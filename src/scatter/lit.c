@@ -5,8 +5,8 @@
 #include <math.h>
 #include <stdlib.h>
 
-/* Up to this many occluders are cut out at once; more, and the part is halved first. */
-enum { OCCLUDERS_AT_ONCE = 24, POLYGONS_AT_ONCE = 160 };
+/* Occluders are cut out of a part at once while that takes this many cuts and leaves this many polygons; more, and it is halved first. */
+enum { CUTS_AT_ONCE = 1000, POLYGONS_AT_ONCE = 160 };
 
 const rg_polygon rg_whole_facet = {.n = 3, .a = {0.0, 1.0, 0.0}, .b = {0.0, 0.0, 1.0}};
 
@@ -86,10 +86,12 @@ double rg_lit_take_undecided_m2(rg_lit_scratch *scratch)
 static bool cut_out(const lit_job *job, const rg_polygon *part, const uint32_t list[], size_t n_list, bool *enough)
 {
     rg_polygon *from = job->scratch->cut[0], *to = job->scratch->cut[1];
-    size_t n = 1;
+    size_t n = 1, cuts = 0;
     from[0] = *part;
     for (size_t o = 0; o < n_list && n > 0; o++) {
         size_t n_to = 0;
+        cuts += n;
+        if (cuts > CUTS_AT_ONCE) return false;
         for (size_t i = 0; i < n; i++) {
             size_t added;
             if (!rg_polygon_minus(&from[i], &job->scratch->region[list[o]], POLYGONS_AT_ONCE - n_to, to + n_to, &added)) return false;
@@ -146,7 +148,7 @@ static bool add_lit(const lit_job *job, const rg_polygon *part, size_t first, si
     bool enough = true;
     double p[3], q[3];
     if (n == 0) return add_polygon(job->lit, part);
-    if (n <= OCCLUDERS_AT_ONCE && cut_out(job, part, scratch->list + first, n, &enough)) return enough;
+    if (cut_out(job, part, scratch->list + first, n, &enough)) return enough;
     if (longest_m2(job->face, part, p, q) <= job->grain_m * job->grain_m) {
         scratch->undecided_m2 += 0.5 * job->face->normal_m2[2] * rg_polygon_area2(part);
         for (size_t i = 0; i < n; i++)
@@ -173,12 +175,6 @@ static bool add_lit(const lit_job *job, const rg_polygon *part, size_t first, si
     return enough;
 }
 
-static int by_index(const void *a, const void *b)
-{
-    const uint32_t x = *(const uint32_t *)a, y = *(const uint32_t *)b;
-    return (x > y) - (x < y);
-}
-
 /* Names the facets in the shadow prism of a part of a face. */
 static bool query_prism(const rg_scene *scene, const rg_seen *seen, const rg_face *face, const rg_polygon *part, rg_lit_scratch *scratch, size_t *n)
 {
@@ -198,35 +194,51 @@ static bool query_prism(const rg_scene *scene, const rg_seen *seen, const rg_fac
     return true;
 }
 
+/* Puts list[0 .. n - 1] in the order of the facets that hide, for the tree's order must not show in the result. Runs are short. */
+static void sort_by_facet(uint32_t list[], size_t n, const uint32_t facet[])
+{
+    for (size_t step = n / 2; step > 0; step /= 2)          /* D. L. Shell, 1959 */
+        for (size_t i = step; i < n; i++) {
+            const uint32_t moved = list[i];
+            size_t k = i;
+            for (; k >= step && facet[list[k - step]] > facet[moved]; k -= step) list[k] = list[k - step];
+            list[k] = moved;
+        }
+}
+
 bool rg_lit_part(const rg_scene *scene, const rg_seen *seen, const rg_face *face, const rg_polygon *part, const rg_horizon *horizon,
                  double grain_m, rg_lit_scratch *scratch, rg_polygons *lit)
 {
-    const double same_m = scene->mesh->report.weld_m;
     size_t n, n_hiding = 0;
-    rg_face other;
-    rg_region region;
     if (!query_prism(scene, seen, face, part, scratch, &n)) return false;
-    for (size_t i = 0; i < n; i++) {                        /* most are only neighbours, and not worth sorting */
+    for (size_t i = 0; i < n; i++) {
         const uint32_t near = scratch->near[i];
+        rg_face other;
+        if (!rg_make_room((void **)&scratch->region, &scratch->region_room, n_hiding + 1, sizeof *scratch->region)) return false;
+        rg_region *region = &scratch->region[n_hiding];
         if (near == face->index || !rg_face_seen(&other, scene->mesh, seen, near) ||
-            !rg_occluder_region(&region, face, &other, same_m, horizon))
+            !rg_occluder_region(region, face, &other, scene->mesh->report.weld_m, horizon))
             continue;
-        const reach_of_region found = reach(&region, part);
+        const reach_of_region found = reach(region, part);
         if (found == COVERS) return true;
         if (found == REACHES) scratch->near[n_hiding++] = near;
     }
     if (n_hiding == 0) return add_polygon(lit, part);
-    if (!rg_make_room((void **)&scratch->region, &scratch->region_room, n_hiding, sizeof *scratch->region) ||
-        !rg_make_room((void **)&scratch->list, &scratch->list_room, n_hiding, sizeof *scratch->list))
-        return false;
-    qsort(scratch->near, n_hiding, sizeof *scratch->near, by_index);    /* the tree's order must not show in the result */
-    for (size_t i = 0; i < n_hiding; i++) {
-        rg_face_seen(&other, scene->mesh, seen, scratch->near[i]);
-        rg_occluder_region(&scratch->region[i], face, &other, same_m, horizon);
-        scratch->list[i] = (uint32_t)i;
-    }
+    if (!rg_make_room((void **)&scratch->list, &scratch->list_room, n_hiding, sizeof *scratch->list)) return false;
+    for (size_t i = 0; i < n_hiding; i++) scratch->list[i] = (uint32_t)i;
+    sort_by_facet(scratch->list, n_hiding, scratch->near);
     const lit_job job = {.face = face, .grain_m = grain_m, .scratch = scratch, .lit = lit};
     return add_lit(&job, part, 0, n_hiding);
+}
+
+bool rg_lit_from_afar(const rg_scene *scene, const rg_seen *seen, const rg_cover *cover, const rg_face *face, const rg_polygon *part,
+                      double grain_m, rg_lit_scratch *scratch, rg_polygons *lit)
+{
+    switch (rg_cover_of(cover, face)) {
+    case RG_COVER_LIT: return add_polygon(lit, part);
+    case RG_COVER_DARK: return true;
+    default: return rg_lit_part(scene, seen, face, part, NULL, grain_m, scratch, lit);
+    }
 }
 
 static bool make_piece_room(rg_pieces *pieces, size_t n)

@@ -1,6 +1,7 @@
 /* lit.h - which portions of which facets does the radar see? */
 #ifndef RG_SCATTER_LIT_H
 #define RG_SCATTER_LIT_H
+#include "scatter/cover.h"
 #include "scatter/occluder.h"
 #include "scatter/scene.h"
 
@@ -31,6 +32,10 @@ extern const rg_polygon rg_whole_facet;
  * False without memory. */
 bool rg_lit_part(const rg_scene *scene, const rg_seen *seen, const rg_face *face, const rg_polygon *part, const rg_horizon *horizon,
                  double grain_m, rg_lit_scratch *scratch, rg_polygons *lit);
+
+/* rg_lit_part for the radar itself: the cover answers for most faces, what it cannot prove is cut. */
+bool rg_lit_from_afar(const rg_scene *scene, const rg_seen *seen, const rg_cover *cover, const rg_face *face, const rg_polygon *part,
+                      double grain_m, rg_lit_scratch *scratch, rg_polygons *lit);
 
 /* Lit pieces: triangles, each a whole facet or a portion of one, as rg_triangle_sum takes them. Start with {0}. */
 typedef struct {
