@@ -141,14 +141,14 @@ static rg_status find_axis(const rg_table *t, const plot_job *job, const char *p
     return RG_OK;
 }
 
-enum { NAME_ROOM = 200, PLACE_ROOM = 200, LABEL_ROOM = 500 };
+enum { NAME_ROOM = 200, PLACE_ROOM = 120, N_PLACES = N_AXES + 1, LABEL_ROOM = 900 };
 
 /* What the picture is made of; arrays live until free_curves. */
 typedef struct {
     size_t n;
     rg_curve curve[RG_PLOT_MOST_CURVES];
     char pol[RG_PLOT_MOST_CURVES][24];          /* "HH", or "HH = VV" */
-    char place[RG_PLOT_MOST_CURVES][PLACE_ROOM];/* what its other axes stand at */
+    char place[RG_PLOT_MOST_CURVES][N_PLACES][PLACE_ROOM];     /* what its other axes stand at, and its part */
     const char *path[RG_PLOT_MOST_CURVES];
     char label[RG_PLOT_MOST_CURVES][LABEL_ROOM];
     int x_axis;
@@ -197,20 +197,16 @@ static rg_status add_curve(curves *c, const rg_table *t, const plot_job *job, in
     return RG_OK;
 }
 
-static void describe_place(char place[PLACE_ROOM], const rg_table *t, const plot_job *job, int x_axis, size_t row)
+static void describe_place(char place[N_PLACES][PLACE_ROOM], const rg_table *t, const plot_job *job, int x_axis, size_t row)
 {
     static const int order[N_AXES] = {FREQ, AZ, EL};
-    place[0] = 0;
     for (int i = 0; i < N_AXES; i++) {
         char text[RG_DECIMAL_ROOM + 8];
         const int axis = order[i];
-        const size_t used = strlen(place);
-        if (axis == x_axis) continue;
         axis_text(text, axis, axis_value(t, axis, row), "\xc2\xb0", " GHz");
-        snprintf(place + used, PLACE_ROOM - used, "%s%s%s", used ? ", " : "", axis == FREQ ? "" : axis == AZ ? "azimuth " : "elevation ", text);
+        if (axis != x_axis) snprintf(place[i], PLACE_ROOM, "%s%s", axis == FREQ ? "" : axis == AZ ? "azimuth " : "elevation ", text);
     }
-    const size_t used = strlen(place);
-    if (job->part) snprintf(place + used, PLACE_ROOM - used, ", part %.80s", job->part);
+    if (job->part) snprintf(place[N_AXES], PLACE_ROOM, "part %.100s", job->part);
 }
 
 static rg_status add_table(curves *c, const char *path, const plot_job *job, rg_error *err)
@@ -246,19 +242,29 @@ static rg_status add_table(curves *c, const char *path, const plot_job *job, rg_
 
 static const char *file_name(const char *path) { return strrchr(path, '/') ? strrchr(path, '/') + 1 : path; }
 
-/* Of each curve what tells it from the others; the rest is common to all of them. */
-static void make_labels(curves *c, size_t n_tables)
+static void append(char *text, size_t room, const char *between, const char *more)
 {
-    bool one_place = true, one_name = false;
-    for (size_t i = 0; i < c->n; i++) {
-        one_place &= strcmp(c->place[i], c->place[0]) == 0;
-        for (size_t k = 0; k < i; k++) one_name |= c->path[i] != c->path[k] && strcmp(file_name(c->path[i]), file_name(c->path[k])) == 0;
+    const size_t used = strlen(text);
+    if (*more) snprintf(text + used, room - used, "%s%s", used ? between : "", more);
+}
+
+/* A label says of each curve what tells it from the others; what is common to all of them goes to the note. */
+static void make_labels(curves *c, size_t n_tables, char *note, size_t note_room)
+{
+    bool common[N_PLACES], same_name = false;
+    for (int k = 0; k < N_PLACES; k++) {
+        common[k] = true;
+        for (size_t i = 1; i < c->n; i++) common[k] &= strcmp(c->place[i][k], c->place[0][k]) == 0;
+        if (common[k]) append(note, note_room, ", ", c->place[0][k]);
     }
+    for (size_t i = 0; i < c->n; i++)
+        for (size_t k = 0; k < i; k++) same_name |= c->path[i] != c->path[k] && strcmp(file_name(c->path[i]), file_name(c->path[k])) == 0;
     for (size_t i = 0; i < c->n; i++) {
-        const char *name = n_tables == 1 ? "" : one_name ? c->path[i] : file_name(c->path[i]);
-        snprintf(c->label[i], LABEL_ROOM, "%s%s%.200s%s%s", c->pol[i], *name ? "  " : "", name, one_place ? "" : "  ", one_place ? "" : c->place[i]);
+        append(c->label[i], LABEL_ROOM, "", c->pol[i]);
+        if (n_tables > 1) append(c->label[i], LABEL_ROOM, "  ", same_name ? c->path[i] : file_name(c->path[i]));
+        for (int k = 0; k < N_PLACES; k++)
+            if (!common[k]) append(c->label[i], LABEL_ROOM, "  ", c->place[i][k]);
     }
-    if (!one_place) c->place[0][0] = 0;
 }
 
 static bool is_full_circle(const curves *c)
@@ -271,13 +277,16 @@ static bool is_full_circle(const curves *c)
 
 static rg_status draw(curves *c, const plot_job *job, size_t n_tables, rg_error *err)
 {
-    char title[NAME_ROOM] = "";
+    char title[NAME_ROOM] = "", note[N_PLACES * PLACE_ROOM] = "";
     const bool polar = job->kind ? strcmp(job->kind, "polar") == 0 : is_full_circle(c);
     if (polar && c->x_axis != AZ) return rg_fail(err, RG_BAD_VALUE, "--kind polar needs a table over azimuth, this one runs over %s", axis_name[c->x_axis]);
-    make_labels(c, n_tables);
-    if (n_tables == 1) snprintf(title, sizeof title, "%.*s", (int)strcspn(file_name(c->path[0]), "."), file_name(c->path[0]));
-    char note[PLACE_ROOM + 40];
-    snprintf(note, sizeof note, "%s%s%s", polar ? "radar cross section over azimuth" : "", polar && c->place[0][0] ? ", " : "", c->place[0]);
+    if (polar) append(note, sizeof note, "", "radar cross section over azimuth");
+    make_labels(c, n_tables, note, sizeof note);
+    if (n_tables == 1) {
+        snprintf(title, sizeof title, "%s", file_name(c->path[0]));
+        char *dot = strrchr(title, '.');
+        if (dot && dot > title) *dot = 0;
+    }
     const rg_plot plot = {.kind = polar ? RG_PLOT_POLAR : RG_PLOT_CARTESIAN, .title = job->title ? job->title : title, .note = note,
                           .x_name = axis_name[c->x_axis], .x_is_angle = c->x_axis != FREQ, .n_curves = c->n, .curve = c->curve,
                           .low_dbsm = job->low_dbsm, .high_dbsm = job->high_dbsm, .width_px = job->width_px};
