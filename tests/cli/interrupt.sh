@@ -21,7 +21,8 @@ rm told sphere.ply
 roadglint shape sphere --radius 0.3m --sagitta 0.002mm --out sphere.obj 2>/dev/null
 roadglint sweep sphere.obj --freq 77GHz --az 0:359.99:0.01 --quiet --out new.csv 2>told &
 n=0
-while ! grep -q '^SigCgt:.*[2367abef]$' "/proc/$!/status" && [ $n -lt 300 ]; do    # until it listens for SIGINT
+# Until it is no longer the shell's child, and listens for SIGINT.
+until { grep -q roadglint "/proc/$!/comm" && grep -q '^SigCgt:.*[2367abef]$' "/proc/$!/status"; } || [ $n -ge 300 ]; do
     sleep 0.01
     n=$((n + 1))
 done
