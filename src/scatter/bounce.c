@@ -1,6 +1,7 @@
 /* bounce.c - what reaches the radar after two and more reflections */
 #include "scatter/bounce.h"
 #include "base/room.h"
+#include <math.h>
 #include <stdlib.h>
 
 /* Corners of a beam: with the three of a target and the horizon's cut they make RG_POLYGON_CORNERS at the most. */
@@ -140,7 +141,8 @@ static bool name_targets(const bounce_job *job, const placed_face *from, const r
 }
 
 /* What of a target lies in the beam and on its side of the facet that it comes from; n = 0 where nothing does. */
-static rg_polygon part_in_beam(const rg_face *target, const double beam[][3], int n_beam, const rg_horizon *horizon, double same_m)
+static rg_polygon part_in_beam(const rg_face *target, const double beam[][3], int n_beam, const rg_horizon *horizon, double same_m,
+                               double reach_m)
 {
     rg_polygon part = rg_whole_facet, rest;
     rg_half_plane plane;
@@ -155,6 +157,8 @@ static rg_polygon part_in_beam(const rg_face *target, const double beam[][3], in
     for (int e = -1; e < n_beam && part.n > 0; e++) {
         if (e >= 0) {
             const double *p = beam[e], *q = beam[(e + 1) % n_beam];
+            /* Corners carry roundings of some reach * 2^-50; two that are no farther apart are one, and no edge runs between them. */
+            if (fabs(q[0] - p[0]) + fabs(q[1] - p[1]) <= 0x1p-44 * reach_m) continue;
             for (int i = 0; i < 3; i++)
                 plane.at_corner[i] = (q[0] - p[0]) * (target->at_m[i][1] - p[1]) - (q[1] - p[1]) * (target->at_m[i][0] - p[0]);
         }
@@ -236,7 +240,7 @@ static bool follow(const bounce_job *job, const rg_face *face, const rg_polygon 
     for (size_t t = 0; t < n_targets; t++) {
         rg_face target;
         if (here->near[t] == face->index || !rg_face_seen(&target, mesh, &seen, here->near[t])) continue;
-        const rg_polygon met = part_in_beam(&target, (const double(*)[3])beam, part->n, &horizon, mesh->report.weld_m);
+        const rg_polygon met = part_in_beam(&target, (const double(*)[3])beam, part->n, &horizon, mesh->report.weld_m, seen.reach_m);
         if (met.n == 0) continue;
         here->lit.n = 0;
         if (!rg_lit_part(job->scene, &seen, &target, &met, &horizon, job->grain_m, job->lit_scratch, &here->lit)) return false;

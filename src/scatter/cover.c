@@ -77,7 +77,8 @@ static void place_cells(rg_cover *cover, const rg_mesh *mesh, const rg_seen *see
         cover->n[axis] = (int)((high[axis] - cover->low_m[axis]) / c) + 1;
     }
     const cell empty = {.patch = NO_PATCH, .nearest_m = -INFINITY, .farthest_m = INFINITY, .other_m = -INFINITY};
-    for (size_t i = 0; i < (size_t)cover->n[0] * (size_t)cover->n[1]; i++) cover->cells[i] = empty;
+    const size_t n_cells = (size_t)cover->n[0] * (size_t)cover->n[1];
+    for (size_t i = 0; i < n_cells; i++) cover->cells[i] = empty;
 }
 
 /* Which side of each facet shows: 1 its outer one, 2 the other one of a sheet, 0 none. Kept in patch_of until patches are found. */
@@ -123,8 +124,9 @@ static cell_range range_of(const rg_cover *cover, size_t n, const double (*const
     for (int axis = 0; axis < 2; axis++) {
         double low = INFINITY, high = -INFINITY;
         for (size_t i = 0; i < n; i++) {
-            low = fmin(low, (*at_m[i])[axis]);
-            high = fmax(high, (*at_m[i])[axis]);
+            const double x = (*at_m[i])[axis];
+            low = x < low ? x : low;
+            high = x > high ? x : high;
         }
         range.from[axis] = clamp_index((low - cover->low_m[axis]) / cover->cell_m - BORDER, cover->n[axis]);
         range.to[axis] = clamp_index((high - cover->low_m[axis]) / cover->cell_m + BORDER, cover->n[axis]);
@@ -162,25 +164,27 @@ static drawn_face draw_face(const rg_cover *cover, const rg_face *face)
     return d;
 }
 
-typedef enum { OUTSIDE, TOUCHES, HAS_MIDDLE } share_of_cell;
-
-static share_of_cell share(const drawn_face *d, int x, int y)
+static bool has_middle(const drawn_face *d, int x, int y)
 {
-    bool middle = true;
-    for (int e = 0; e < 3; e++) {
-        const double f = d->f[e] + x * d->fx[e] + y * d->fy[e];
-        if (f < -d->slack[e]) return OUTSIDE;
-        middle &= f >= -d->touch[e];
-    }
-    return middle ? HAS_MIDDLE : TOUCHES;
+    for (int e = 0; e < 3; e++)
+        if (d->f[e] + x * d->fx[e] + y * d->fy[e] < -d->touch[e]) return false;
+    return true;
+}
+
+static bool touches(const drawn_face *d, int x, int y)
+{
+    for (int e = 0; e < 3; e++)
+        if (d->f[e] + x * d->fx[e] + y * d->fy[e] < -d->slack[e]) return false;
+    return true;
 }
 
 /* How far and how near the face reaches in a cell. */
 static void reach_in_cell(const drawn_face *d, int x, int y, double *far_m, double *near_m)
 {
     const double middle = d->p + x * d->px + y * d->py;
-    *far_m = fmax(d->p_low, middle - d->p_slack);
-    *near_m = fmin(d->p_high, middle + d->p_slack);
+    const double far = middle - d->p_slack, near = middle + d->p_slack;
+    *far_m = far > d->p_low ? far : d->p_low;
+    *near_m = near < d->p_high ? near : d->p_high;
 }
 
 static void draw_nearest(rg_cover *cover, const drawn_face *d, uint32_t patch)
@@ -189,7 +193,7 @@ static void draw_nearest(rg_cover *cover, const drawn_face *d, uint32_t patch)
         for (int x = d->range.from[0]; x <= d->range.to[0]; x++) {
             cell *c = &cover->cells[(size_t)y * (size_t)cover->n[0] + (size_t)x];
             const double middle = d->p + x * d->px + y * d->py;
-            if (middle <= c->nearest_m || share(d, x, y) != HAS_MIDDLE) continue;
+            if (middle <= c->nearest_m || !has_middle(d, x, y)) continue;
             c->nearest_m = middle;
             c->patch = patch;
         }
@@ -199,16 +203,15 @@ static void draw_reach(rg_cover *cover, const drawn_face *d, uint32_t patch)
 {
     for (int y = d->range.from[1]; y <= d->range.to[1]; y++)
         for (int x = d->range.from[0]; x <= d->range.to[0]; x++) {
-            const share_of_cell has = share(d, x, y);
-            if (has == OUTSIDE) continue;
+            if (!touches(d, x, y)) continue;
             cell *c = &cover->cells[(size_t)y * (size_t)cover->n[0] + (size_t)x];
             double far_m, near_m;
             reach_in_cell(d, x, y, &far_m, &near_m);
             if (c->patch != patch) {
-                c->other_m = fmax(c->other_m, near_m);
+                if (near_m > c->other_m) c->other_m = near_m;
             } else {
-                c->farthest_m = fmin(c->farthest_m, far_m);
-                c->layers = (uint8_t)(c->layers + (has == HAS_MIDDLE && c->layers < 2));
+                if (far_m < c->farthest_m) c->farthest_m = far_m;
+                if (c->layers < 2 && has_middle(d, x, y)) c->layers++;
             }
         }
 }
@@ -258,20 +261,34 @@ void rg_cover_draw(rg_cover *cover, const rg_mesh *mesh, const rg_seen *seen)
         }
 }
 
-rg_cover_state rg_cover_of(const rg_cover *cover, const rg_face *face)
+/* All of the face in this cell is behind the patch that covers it. */
+static bool dark_in_cell(const rg_cover *cover, const cell *c, double near_m)
+{
+    return c->patch != NO_PATCH && !c->torn && c->farthest_m > near_m + cover->same_m;
+}
+
+rg_cover_state rg_cover_of(const rg_cover *cover, const rg_face *face, double open_m[4])
 {
     const drawn_face d = draw_face(cover, face);
     const uint32_t patch = cover->patch_of[face->index];
-    bool lit = true, dark = true;
-    for (int y = d.range.from[1]; y <= d.range.to[1] && (lit || dark); y++)
-        for (int x = d.range.from[0]; x <= d.range.to[0] && (lit || dark); x++) {
-            if (share(&d, x, y) == OUTSIDE) continue;
+    cell_range open = {{d.range.to[0] + 1, d.range.to[1] + 1}, {d.range.from[0] - 1, d.range.from[1] - 1}};
+    bool lit = true;
+    for (int y = d.range.from[1]; y <= d.range.to[1]; y++)
+        for (int x = d.range.from[0]; x <= d.range.to[0]; x++) {
+            if (!touches(&d, x, y)) continue;
             const cell *c = &cover->cells[(size_t)y * (size_t)cover->n[0] + (size_t)x];
             double far_m, near_m;
             reach_in_cell(&d, x, y, &far_m, &near_m);
-            const bool whole = c->patch != NO_PATCH && !c->torn;
-            dark = dark && whole && c->farthest_m > near_m + cover->same_m;
-            lit = lit && whole && c->patch == patch && c->layers == 1 && c->other_m < far_m - cover->same_m;
+            lit = lit && c->patch == patch && !c->torn && c->layers == 1 && c->other_m < far_m - cover->same_m;
+            if (dark_in_cell(cover, c, near_m)) continue;
+            if (x < open.from[0]) open.from[0] = x;
+            if (x > open.to[0]) open.to[0] = x;
+            if (y < open.from[1]) open.from[1] = y;
+            if (y > open.to[1]) open.to[1] = y;
         }
-    return lit ? RG_COVER_LIT : dark ? RG_COVER_DARK : RG_COVER_UNKNOWN;
+    for (int axis = 0; axis < 2; axis++) {
+        open_m[2 * axis] = cover->low_m[axis] + open.from[axis] * cover->cell_m;
+        open_m[2 * axis + 1] = cover->low_m[axis] + (open.to[axis] + 1) * cover->cell_m;
+    }
+    return lit ? RG_COVER_LIT : open.from[0] > open.to[0] ? RG_COVER_DARK : RG_COVER_UNKNOWN;
 }

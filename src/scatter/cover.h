@@ -12,7 +12,7 @@
 
 typedef struct rg_cover rg_cover;
 
-/* Room for any aspect of a mesh: some 80 bytes a facet. RG_NO_MEMORY. */
+/* Room for any aspect of a mesh: some 90 bytes a facet. RG_NO_MEMORY. */
 rg_status rg_cover_new(rg_cover **out, const rg_mesh *mesh, rg_error *err);
 void rg_cover_free(rg_cover *cover);        /* takes NULL */
 
@@ -21,6 +21,8 @@ void rg_cover_draw(rg_cover *cover, const rg_mesh *mesh, const rg_seen *seen);
 
 typedef enum { RG_COVER_UNKNOWN, RG_COVER_LIT, RG_COVER_DARK } rg_cover_state;
 
-rg_cover_state rg_cover_of(const rg_cover *cover, const rg_face *face);
+/* What the cover proves of a face. Where that is nothing of the whole, *open tells where light may fall: along h from open[0] to open[1],
+ * along v from open[2] to open[3]; all of the face outside is dark. */
+rg_cover_state rg_cover_of(const rg_cover *cover, const rg_face *face, double open_m[4]);
 
 #endif

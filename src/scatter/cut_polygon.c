@@ -18,6 +18,16 @@ double rg_polygon_area2(const rg_polygon *p)
     return sum;
 }
 
+/* Corners, and not the room for more. */
+static void copy_polygon(rg_polygon *to, const rg_polygon *from)
+{
+    to->n = from->n;
+    for (int i = 0; i < from->n; i++) {
+        to->a[i] = from->a[i];
+        to->b[i] = from->b[i];
+    }
+}
+
 static void add_corner(rg_polygon *p, double a, double b)
 {
     p->a[p->n] = a;
@@ -36,7 +46,7 @@ bool rg_polygon_split(const rg_polygon *p, const rg_half_plane *plane, rg_polygo
     }
     inside->n = outside->n = 0;
     if (!any_out || !any_in) {
-        *(any_in ? inside : outside) = *p;
+        copy_polygon(any_in ? inside : outside, p);
         return true;
     }
     for (int i = 0; i < p->n; i++) {
@@ -55,25 +65,35 @@ bool rg_polygon_split(const rg_polygon *p, const rg_half_plane *plane, rg_polygo
     return inside->n <= RG_POLYGON_CORNERS && outside->n <= RG_POLYGON_CORNERS;
 }
 
+/* Some edge has all of the polygon on its far side. */
+static bool apart(const rg_polygon *p, const rg_region *region)
+{
+    for (int e = 0; e < region->n; e++) {
+        int i = 0;
+        while (i < p->n && rg_half_plane_at(&region->edge[e], p->a[i], p->b[i]) <= 0.0) i++;
+        if (i == p->n) return true;
+    }
+    return false;
+}
+
 bool rg_polygon_minus(const rg_polygon *polygon, const rg_region *region, size_t room, rg_polygon out[], size_t *n)
 {
-    rg_polygon rest = *polygon;
+    rg_polygon kept[2];                                     /* what is left inside of the edges so far, and room for what comes of it */
+    const rg_polygon *rest = polygon;
     *n = 0;
-    for (int e = 0; e < region->n; e++) {
-        rg_polygon inside, outside;
-        if (!rg_polygon_split(&rest, &region->edge[e], &inside, &outside)) return false;
-        if (inside.n == 0) {                                /* no overlap: the cuts so far were for nothing */
-            if (room == 0) return false;
-            out[0] = *polygon;
-            *n = 1;
-            return true;
-        }
-        if (outside.n > 0) {
-            if (*n == room) return false;
-            out[(*n)++] = outside;
-        }
+    bool meets = !apart(polygon, region);
+    for (int e = 0; e < region->n && meets; e++) {
+        rg_polygon *inside = &kept[e % 2];
+        if (*n == room) return false;
+        if (!rg_polygon_split(rest, &region->edge[e], inside, &out[*n])) return false;
+        meets = inside->n > 0;
+        *n += out[*n].n > 0;
         rest = inside;
     }
+    if (meets) return true;
+    if (room == 0) return false;
+    copy_polygon(&out[0], polygon);                         /* no overlap: the cuts, if any, were for nothing */
+    *n = 1;
     return true;
 }
 

@@ -68,7 +68,7 @@ static bool gather_hidden(const rg_scene *scene, const rg_seen *seen, const rg_e
         if (!rg_make_room((void **)&scratch->hidden, &scratch->hidden_room, scratch->n_hidden + 1, sizeof *scratch->hidden)) return false;
         scratch->hidden[scratch->n_hidden++] = (interval){stretch[0], stretch[1]};
     }
-    qsort(scratch->hidden, scratch->n_hidden, sizeof *scratch->hidden, by_start);
+    if (scratch->n_hidden > 1) qsort(scratch->hidden, scratch->n_hidden, sizeof *scratch->hidden, by_start);
     return true;
 }
 

@@ -11,8 +11,9 @@ enum { CUTS_AT_ONCE = 1000, POLYGONS_AT_ONCE = 160 };
 const rg_polygon rg_whole_facet = {.n = 3, .a = {0.0, 1.0, 0.0}, .b = {0.0, 0.0, 1.0}};
 
 struct rg_lit_scratch {
-    uint32_t *near;                 /* what the prism query named, then what of it hides something */
-    size_t near_room;
+    uint32_t *near;                 /* what the prism query named */
+    double *nearest_m;              /* how near each of those reaches, along s */
+    size_t near_room, nearest_room;
     rg_region *region;              /* what those hide of the face */
     size_t region_room;
     uint32_t *list;                 /* indices of regions, one stretch for each level of the halving */
@@ -35,6 +36,7 @@ void rg_lit_scratch_free(rg_lit_scratch *scratch)
 {
     if (!scratch) return;
     free(scratch->near);
+    free(scratch->nearest_m);
     free(scratch->region);
     free(scratch->list);
     free(scratch);
@@ -81,29 +83,38 @@ double rg_lit_take_undecided_m2(rg_lit_scratch *scratch)
     return taken;
 }
 
-/* Appends the lit polygons of a part, all shadows cut out; false when they do not fit, and then nothing has been appended. *enough is
- * false without memory. */
-static bool cut_out(const lit_job *job, const rg_polygon *part, const uint32_t list[], size_t n_list, bool *enough)
+/* A part of a face while shadows are cut out of it. */
+typedef struct { rg_polygon *now, *next; size_t n, cuts; } cutting;
+
+static cutting start_cutting(rg_lit_scratch *scratch, const rg_polygon *part)
 {
-    rg_polygon *from = job->scratch->cut[0], *to = job->scratch->cut[1];
-    size_t n = 1, cuts = 0;
-    from[0] = *part;
-    for (size_t o = 0; o < n_list && n > 0; o++) {
-        size_t n_to = 0;
-        cuts += n;
-        if (cuts > CUTS_AT_ONCE) return false;
-        for (size_t i = 0; i < n; i++) {
-            size_t added;
-            if (!rg_polygon_minus(&from[i], &job->scratch->region[list[o]], POLYGONS_AT_ONCE - n_to, to + n_to, &added)) return false;
-            n_to += added;
-        }
-        rg_polygon *swap = from;
-        from = to;
-        to = swap;
-        n = n_to;
+    scratch->cut[0][0] = *part;
+    return (cutting){.now = scratch->cut[0], .next = scratch->cut[1], .n = 1};
+}
+
+/* Cuts one region out of all polygons; false when it takes too much, and then the cutting is of no use any more. */
+static bool cut_out(cutting *c, const rg_region *region)
+{
+    size_t n_next = 0;
+    c->cuts += c->n;
+    if (c->cuts > CUTS_AT_ONCE) return false;
+    for (size_t i = 0; i < c->n; i++) {
+        size_t added;
+        if (!rg_polygon_minus(&c->now[i], region, POLYGONS_AT_ONCE - n_next, c->next + n_next, &added)) return false;
+        n_next += added;
     }
-    for (size_t i = 0; i < n && *enough; i++) *enough = add_polygon(job->lit, &from[i]);
+    rg_polygon *swap = c->now;
+    c->now = c->next;
+    c->next = swap;
+    c->n = n_next;
     return true;
+}
+
+static bool add_polygons(rg_polygons *list, const cutting *c)
+{
+    bool enough = true;
+    for (size_t i = 0; i < c->n && enough; i++) enough = add_polygon(list, &c->now[i]);
+    return enough;
 }
 
 static void corner_m(const rg_face *face, const rg_polygon *part, int i, double at_m[3])
@@ -141,14 +152,23 @@ static rg_half_plane half_way(const rg_face *face, const double p[3], const doub
     return plane;
 }
 
+static bool add_halves(const lit_job *job, const rg_polygon *part, size_t first, size_t n);
+
 /* Appends what is lit of a part; the regions that may reach it are list[first .. first + n - 1]. False without memory. */
 static bool add_lit(const lit_job *job, const rg_polygon *part, size_t first, size_t n)
+{
+    cutting c = start_cutting(job->scratch, part);
+    for (size_t i = 0; i < n && c.n > 0; i++)
+        if (!cut_out(&c, &job->scratch->region[job->scratch->list[first + i]])) return add_halves(job, part, first, n);
+    return add_polygons(job->lit, &c);
+}
+
+/* The same by halves, which fewer regions reach; a part no longer than the grain as its middle is. */
+static bool add_halves(const lit_job *job, const rg_polygon *part, size_t first, size_t n)
 {
     rg_lit_scratch *scratch = job->scratch;
     bool enough = true;
     double p[3], q[3];
-    if (n == 0) return add_polygon(job->lit, part);
-    if (cut_out(job, part, scratch->list + first, n, &enough)) return enough;
     if (longest_m2(job->face, part, p, q) <= job->grain_m * job->grain_m) {
         scratch->undecided_m2 += 0.5 * job->face->normal_m2[2] * rg_polygon_area2(part);
         for (size_t i = 0; i < n; i++)
@@ -194,51 +214,140 @@ static bool query_prism(const rg_scene *scene, const rg_seen *seen, const rg_fac
     return true;
 }
 
-/* Puts list[0 .. n - 1] in the order of the facets that hide, for the tree's order must not show in the result. Runs are short. */
-static void sort_by_facet(uint32_t list[], size_t n, const uint32_t facet[])
+/* What a facet must reach into to hide anything of a part: its shadow across the line of sight, as a box, and what is before its plane. */
+typedef struct { double low_m[2], high_m[2], normal[3], at_m[3], same_m; } shadow_box;
+
+static shadow_box box_of(const rg_face *face, const rg_polygon *part, double same_m)
 {
-    for (size_t step = n / 2; step > 0; step /= 2)          /* D. L. Shell, 1959 */
-        for (size_t i = step; i < n; i++) {
-            const uint32_t moved = list[i];
-            size_t k = i;
-            for (; k >= step && facet[list[k - step]] > facet[moved]; k -= step) list[k] = list[k - step];
-            list[k] = moved;
+    shadow_box box = {.low_m = {INFINITY, INFINITY}, .high_m = {-INFINITY, -INFINITY}};
+    const double *n = face->normal_m2, length = sqrt(n[0] * n[0] + n[1] * n[1] + n[2] * n[2]);
+    for (int i = 0; i < part->n; i++) {
+        double at_m[3];
+        corner_m(face, part, i, at_m);
+        for (int axis = 0; axis < 2; axis++) {
+            box.low_m[axis] = at_m[axis] < box.low_m[axis] ? at_m[axis] : box.low_m[axis];
+            box.high_m[axis] = at_m[axis] > box.high_m[axis] ? at_m[axis] : box.high_m[axis];
         }
+    }
+    for (int axis = 0; axis < 3; axis++) {
+        box.normal[axis] = n[axis] / length;
+        box.at_m[axis] = face->at_m[0][axis];
+    }
+    box.same_m = same_m;
+    return box;
+}
+
+/* False when a facet reaches nowhere into the box; *nearest_m: how near it is, along s. */
+static bool meets_box(const shadow_box *box, const double (*const corner[3])[3], double *nearest_m)
+{
+    double low[2] = {INFINITY, INFINITY}, high[2] = {-INFINITY, -INFINITY};
+    bool before = false;
+    *nearest_m = -INFINITY;
+    for (int c = 0; c < 3; c++) {
+        const double *x = *corner[c];
+        for (int axis = 0; axis < 2; axis++) {
+            low[axis] = x[axis] < low[axis] ? x[axis] : low[axis];
+            high[axis] = x[axis] > high[axis] ? x[axis] : high[axis];
+        }
+        *nearest_m = x[2] > *nearest_m ? x[2] : *nearest_m;
+        before |= box->normal[0] * (x[0] - box->at_m[0]) + box->normal[1] * (x[1] - box->at_m[1]) +
+                  box->normal[2] * (x[2] - box->at_m[2]) >= -box->same_m;
+    }
+    return before && low[0] <= box->high_m[0] && high[0] >= box->low_m[0] && low[1] <= box->high_m[1] && high[1] >= box->low_m[1];
+}
+
+/* Puts what was named in the order from near to far, so that a shadow is mostly found whole with the first few, and equals by index:
+ * who named them must not show in the result. Leaves out what can hide nothing of the part. */
+static bool sort_by_nearness(const rg_scene *scene, const rg_seen *seen, const rg_face *face, const rg_polygon *part, size_t *n_named,
+                             rg_lit_scratch *scratch)
+{
+    uint32_t *near = scratch->near;
+    size_t n = 0;
+    if (!rg_make_room((void **)&scratch->nearest_m, &scratch->nearest_room, *n_named, sizeof *scratch->nearest_m)) return false;
+    double *nearest_m = scratch->nearest_m;
+    const shadow_box box = box_of(face, part, scene->mesh->report.weld_m);
+    for (size_t i = 0; i < *n_named; i++) {
+        const uint32_t *vertex = scene->mesh->facet[near[i]];
+        double turned_m[3][3], place_m;
+        const double (*corner[3])[3];
+        for (int c = 0; c < 3; c++) {
+            if (!seen->at_m) rg_seen_vertex(seen, scene->mesh, vertex[c], turned_m[c]);
+            corner[c] = seen->at_m ? (const double(*)[3])&seen->at_m[vertex[c]] : (const double(*)[3])&turned_m[c];
+        }
+        if (near[i] == face->index || !meets_box(&box, corner, &place_m)) continue;
+        near[n] = near[i];
+        nearest_m[n++] = place_m;
+    }
+    *n_named = n;
+    for (size_t step = n / 2; step > 0; step /= 2)          /* D. L. Shell, 1959; runs are short */
+        for (size_t i = step; i < n; i++) {
+            const uint32_t facet = near[i];
+            const double place_m = nearest_m[i];
+            size_t k = i;
+            for (; k >= step && (nearest_m[k - step] < place_m || (nearest_m[k - step] == place_m && near[k - step] > facet)); k -= step) {
+                near[k] = near[k - step];
+                nearest_m[k] = nearest_m[k - step];
+            }
+            near[k] = facet;
+            nearest_m[k] = place_m;
+        }
+    return true;
 }
 
 bool rg_lit_part(const rg_scene *scene, const rg_seen *seen, const rg_face *face, const rg_polygon *part, const rg_horizon *horizon,
                  double grain_m, rg_lit_scratch *scratch, rg_polygons *lit)
 {
     size_t n, n_hiding = 0;
-    if (!query_prism(scene, seen, face, part, scratch, &n)) return false;
+    bool cuts_do = true;
+    cutting c = start_cutting(scratch, part);
+    if (!query_prism(scene, seen, face, part, scratch, &n) || !sort_by_nearness(scene, seen, face, part, &n, scratch)) return false;
     for (size_t i = 0; i < n; i++) {
         const uint32_t near = scratch->near[i];
         rg_face other;
         if (!rg_make_room((void **)&scratch->region, &scratch->region_room, n_hiding + 1, sizeof *scratch->region)) return false;
         rg_region *region = &scratch->region[n_hiding];
-        if (near == face->index || !rg_face_seen(&other, scene->mesh, seen, near) ||
+        if (!rg_face_seen(&other, scene->mesh, seen, near) ||
             !rg_occluder_region(region, face, &other, scene->mesh->report.weld_m, horizon))
             continue;
         const reach_of_region found = reach(region, part);
         if (found == COVERS) return true;
-        if (found == REACHES) scratch->near[n_hiding++] = near;
+        if (found == MISSES) continue;
+        n_hiding++;
+        cuts_do = cuts_do && cut_out(&c, region);
+        if (cuts_do && c.n == 0) return true;
     }
-    if (n_hiding == 0) return add_polygon(lit, part);
+    if (cuts_do) return add_polygons(lit, &c);
     if (!rg_make_room((void **)&scratch->list, &scratch->list_room, n_hiding, sizeof *scratch->list)) return false;
     for (size_t i = 0; i < n_hiding; i++) scratch->list[i] = (uint32_t)i;
-    sort_by_facet(scratch->list, n_hiding, scratch->near);
     const lit_job job = {.face = face, .grain_m = grain_m, .scratch = scratch, .lit = lit};
-    return add_lit(&job, part, 0, n_hiding);
+    return add_halves(&job, part, 0, n_hiding);
+}
+
+/* What of a part lies in a window across the line of sight; n = 0 where nothing does. */
+static rg_polygon in_window(const rg_face *face, const rg_polygon *part, const double window_m[4])
+{
+    rg_polygon inside = *part, outside;
+    for (int side = 0; side < 4 && inside.n > 0; side++) {
+        const rg_polygon before = inside;
+        rg_half_plane plane;
+        for (int i = 0; i < 3; i++) {
+            const double beyond = face->at_m[i][side / 2] - window_m[side];
+            plane.at_corner[i] = side % 2 == 0 ? beyond : -beyond;
+        }
+        if (!rg_polygon_split(&before, &plane, &inside, &outside)) inside = before;     /* a corner too many: the rest is dark anyhow */
+    }
+    return inside;
 }
 
 bool rg_lit_from_afar(const rg_scene *scene, const rg_seen *seen, const rg_cover *cover, const rg_face *face, const rg_polygon *part,
                       double grain_m, rg_lit_scratch *scratch, rg_polygons *lit)
 {
-    switch (rg_cover_of(cover, face)) {
-    case RG_COVER_LIT: return add_polygon(lit, part);
-    case RG_COVER_DARK: return true;
-    default: return rg_lit_part(scene, seen, face, part, NULL, grain_m, scratch, lit);
-    }
+    double open_m[4];
+    const rg_cover_state state = rg_cover_of(cover, face, open_m);
+    if (state == RG_COVER_LIT) return add_polygon(lit, part);
+    if (state == RG_COVER_DARK) return true;
+    const rg_polygon open = in_window(face, part, open_m);
+    return open.n == 0 || rg_lit_part(scene, seen, face, &open, NULL, grain_m, scratch, lit);
 }
 
 static bool make_piece_room(rg_pieces *pieces, size_t n)

@@ -34,6 +34,12 @@ void rg_seen_free(rg_seen *seen)
     *seen = (rg_seen){0};
 }
 
+void rg_seen_vertex(const rg_seen *seen, const rg_mesh *mesh, uint32_t vertex, double at_m[3])
+{
+    if (seen->at_m) memcpy(at_m, seen->at_m[vertex], 3 * sizeof *at_m);
+    else turn(&seen->view, mesh->vertex_m[vertex], at_m);
+}
+
 static void cross(const double a[3], const double b[3], double out[3])
 {
     out[0] = a[1] * b[2] - a[2] * b[1];
@@ -47,8 +53,7 @@ bool rg_face_seen(rg_face *face, const rg_mesh *mesh, const rg_seen *seen, uint3
     face->index = facet;
     for (int i = 0; i < 3; i++) {
         const uint32_t vertex = face->vertex[i] = mesh->facet[facet][i];
-        if (seen->at_m) memcpy(face->at_m[i], seen->at_m[vertex], sizeof face->at_m[i]);
-        else turn(&seen->view, mesh->vertex_m[vertex], face->at_m[i]);
+        rg_seen_vertex(seen, mesh, vertex, face->at_m[i]);
     }
     for (int e = 0; e < 2; e++)
         for (int i = 0; i < 3; i++) {

@@ -15,6 +15,8 @@ rg_status rg_seen_new(rg_seen *seen, const rg_mesh *mesh, rg_error *err);   /* r
 void rg_seen_turn(rg_seen *seen, const rg_mesh *mesh, const rg_view *view);
 void rg_seen_free(rg_seen *seen);
 
+void rg_seen_vertex(const rg_seen *seen, const rg_mesh *mesh, uint32_t vertex, double at_m[3]);
+
 /* A facet as it is seen: wound counter-clockwise in (h, v), whichever of its sides that shows. */
 typedef struct {
     uint32_t index, vertex[3];
