@@ -92,19 +92,42 @@ static vec3 corner_place(const taking_apart *job, const corner *c, vec3 p, doubl
     return p;
 }
 
-/* Every facet takes its panel's own vertices. */
+/* Would the facet, with its panel's own vertices, be turned over or nearly so? */
+static int folds(taking_apart *job, const facet *f, const vec3 was[])
+{
+    vec3 now[3];
+    for (int k = 0; k < 3; k++) now[k] = job->mesh->vertex_m[corner_of(job, f->v[k], job->panel[f->part].panel)->vertex];
+    const vec3 n = vec3_cross(vec3_sub(was[f->v[1]], was[f->v[0]]), vec3_sub(was[f->v[2]], was[f->v[0]]));
+    const vec3 m = vec3_cross(vec3_sub(now[1], now[0]), vec3_sub(now[2], now[0]));
+    return vec3_dot(n, m) < 0.05 * vec3_dot(n, n);
+}
+
+/* Every facet takes its panel's own vertices. Where a facet is narrower than the gap, its corners move less and the gap is narrower. */
 static void move_facets(taking_apart *job, const vec3 was[], double depth_of_panel[])
 {
+    enum { MOST_PASSES = 8 };
     facets *mesh = job->mesh;
     for (size_t i = 0; i < mesh->n_facets; i++) {
-        facet *f = &mesh->facet[i];
+        const facet *f = &mesh->facet[i];
         for (int k = 0; k < 3; k++) (void)corner_of(job, f->v[k], job->panel[f->part].panel);
     }
-    for (uint32_t v = 0; v < job->n_vertices; v++) {
-        for (uint32_t c = job->first[v]; c != NO_FACET; c = job->corner[c].next) {
-            corner *k = &job->corner[c];
-            k->vertex = facets_vertex(mesh, corner_place(job, k, was[v], depth_of_panel[k->panel]));
+    for (uint32_t v = 0; v < job->n_vertices; v++)
+        for (uint32_t c = job->first[v]; c != NO_FACET; c = job->corner[c].next)
+            job->corner[c].vertex = facets_vertex(mesh, corner_place(job, &job->corner[c], was[v], depth_of_panel[job->corner[c].panel]));
+    for (int pass = 0; pass < MOST_PASSES; pass++) {
+        size_t n_folded = 0;
+        for (size_t i = 0; i < mesh->n_facets; i++) {
+            const facet *f = &mesh->facet[i];
+            const int panel = job->panel[f->part].panel;
+            if (!folds(job, f, was)) continue;
+            for (int k = 0; k < 3; k++) {
+                corner *c = corner_of(job, f->v[k], panel);
+                c->inward = vec3_scale(c->inward, 0.7);
+                mesh->vertex_m[c->vertex] = corner_place(job, c, was[f->v[k]], depth_of_panel[panel]);
+            }
+            n_folded++;
         }
+        if (n_folded == 0) break;
     }
     for (size_t i = 0; i < mesh->n_facets; i++) {
         facet *f = &mesh->facet[i];

@@ -9,8 +9,8 @@
 static const skin_limit smooth = {.sagitta_m = 0.235e-3, .edge_m = 0.120, .judged_m = 0.238e-3};
 static const field body = {saloon_body, NULL};
 
-/* The skin's parts in the order in which they are cut out of the part before the arrow. Panels: 0 is the body itself; gaps between
- * panels 4 mm (common practice: 3.5 to 4.5), glass 4 mm below its frame. Grille and intake are openings, closed at their depth. */
+/* The skin's parts in the order in which they are cut out of the part before the arrow. Panels: 0 is the body itself, for
+ * bonnet, boot, doors and bumpers lie flush and close; glass 4 mm below its frame. Grille and intake are openings, closed at their depth. */
 typedef struct {
     const char *part, *from;
     field_fn *region;
@@ -31,14 +31,14 @@ static const cut_out cut_outs[] = {
     {"grille", "body", saloon_grille, 0.025, {6, 0.030, 0.0}},
     {"lamp_front_left", "body", saloon_lamp_front, 0.025, {7, 0.003, 0.0}},
     {"lamp_rear_left", "body", saloon_lamp_rear, 0.025, {8, 0.003, 0.0}},
-    {"bonnet", "body", saloon_bonnet, 0.045, {9, 0.0, 0.004}},
-    {"boot", "body", saloon_boot, 0.045, {10, 0.0, 0.004}},
+    {"bonnet", "body", saloon_bonnet, 0.045, {0, 0.0, 0.0}},
+    {"boot", "body", saloon_boot, 0.045, {0, 0.0, 0.0}},
     {"boot_recess", "boot", saloon_plate_recess, 0.025, {11, 0.018, 0.0}},
-    {"bumper_front", "body", saloon_bumper_front, 0.060, {12, 0.0, 0.003}},
+    {"bumper_front", "body", saloon_bumper_front, 0.060, {0, 0.0, 0.0}},
     {"intake", "bumper_front", saloon_intake, 0.025, {13, 0.040, 0.0}},
-    {"bumper_rear", "body", saloon_bumper_rear, 0.060, {14, 0.0, 0.003}},
-    {"door_front_left", "body", saloon_doors, 0.045, {15, 0.0, 0.004}},
-    {"door_rear_left", "door_front_left", saloon_door_rear, 0.045, {16, 0.0, 0.004}},
+    {"bumper_rear", "body", saloon_bumper_rear, 0.060, {0, 0.0, 0.0}},
+    {"door_front_left", "body", saloon_doors, 0.045, {0, 0.0, 0.0}},
+    {"door_rear_left", "door_front_left", saloon_door_rear, 0.045, {0, 0.0, 0.0}},
 };
 static const double groove_depth_m = 0.008;
 
