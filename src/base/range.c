@@ -114,6 +114,8 @@ static rg_status add_item(rg_list *list, size_t *room, rg_dimension dimension, c
     rg_status status = RG_OK;
     for (int i = 0; i < n && !status; i++) {
         status = rg_split_quantity(&v[i], &unit_name[i], dimension, field[i], err);
+        if (!status && *unit_name[i] && strchr("+-.0123456789", *unit_name[i]))      /* "0 15 30", "0..30" */
+            status = rg_fail(err, RG_BAD_VALUE, "'%s' is no list: join values by commas, such as 0,15,30, and write a range as START:STOP:STEP", text);
         if (!status && *unit_name[i]) last_unit = unit_name[i];
     }
     for (int i = 0; i < n && !status; i++) status = rg_apply_unit(&v[i], dimension, *unit_name[i] ? unit_name[i] : last_unit, text, err);

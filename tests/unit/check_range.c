@@ -48,7 +48,8 @@ START_TEST(bad_lists)
         {"0:10:-1", "write 0:10:1"}, {"7,5deg:0:+1", "5deg:0:+1 runs downward, so its step has the wrong sign: write 5deg:0:-1"}, {"0:1:0", "step of 0"}, {"0:1", "has no step"}, {"0:1:2:3", "no range"}, {"0/5", "no range"},
         {"0:1/0", "how many values"}, {"0:1/1", "a count of 2 or more"}, {"0:1/2.5", "how many values"}, {"0:1/x", "how many values"}, {"0:1/0x9", "how many values"},
         {"0:1e9:1e-3", "more than"}, {"0:1:1e-300", "more than"}, {"a", "not an angle"}, {"1:b:2", "not an angle"}, {"0:1:1:", "no range"},
-        {"0:5000000:1,0:5000000:1", "more than"}, {"0:1/", "how many values"}};
+        {"0:5000000:1,0:5000000:1", "more than"}, {"0:1/", "how many values"}, {"0 15 30", "by commas, such as 0,15,30"}, {"0..30", "START:STOP:STEP"},
+        {"0:10-1:1", "START:STOP:STEP"}};
     for (size_t i = 0; i < sizeof bad / sizeof bad[0]; i++) {
         rg_list list = {0};
         rg_error err = {{0}};
