@@ -18,6 +18,7 @@ const char *rg_job_path(int argc, char **argv)
 #include <ctype.h>
 #include <errno.h>
 #include <stdarg.h>
+#include <sys/stat.h>
 
 /* libcyaml tells what is wrong line by line; the first line is the cause, the last ones where. */
 typedef struct { char text[200]; } told;
@@ -67,6 +68,8 @@ static rg_status bad_file(const rg_command *command, const char *path, cyaml_err
         if ((end = strstr(key, " Load: "))) *end = 0;
         return take_text(command, key, "", path, job, err);
     }
+    struct stat about;
+    if (stat(path, &about) == 0 && S_ISDIR(about.st_mode)) return rg_fail(err, RG_BAD_INPUT, "%s: this is a folder: name a file of options", path);
     if (found == CYAML_ERR_FILE_OPEN) return rg_fail(err, RG_BAD_INPUT, "%s: %s", path, strerror(errno));
     while ((end = strstr(t->text, noise))) memmove(end + 1, end + sizeof noise - 1, strlen(end + sizeof noise - 1) + 1);
     while ((end = strstr(t->text, gap))) memmove(end, end + 1, strlen(end + 1) + 1);

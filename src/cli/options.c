@@ -150,7 +150,9 @@ static rg_status unknown_option(const rg_command *command, const char *dashes, c
     const char *word[MOST] = {NULL};
     const size_t n_words = command->n_options < MOST ? command->n_options : MOST, n_dashes = strlen(dashes);
     for (size_t i = 0; i < n_words; i++) word[i] = command->option[i].name + 2 - n_dashes;
-    const size_t nearest = rg_nearest_word(word, n_words, name, n);
+    size_t nearest = 0;
+    while (nearest < n_words && !(n_dashes > 0 && strlen(word[nearest]) == n + 1 && strncmp(word[nearest] + 1, name, n) == 0)) nearest++;   /* -az */
+    if (nearest == n_words) nearest = rg_nearest_word(word, n_words, name, n);
     if (nearest < n_words) return rg_fail(err, RG_BAD_VALUE, "there is no option %.*s; did you mean %s?", (int)n, name, word[nearest]);
     return rg_fail(err, RG_BAD_VALUE, "there is no option %.*s; 'roadglint help %s' lists them", (int)n, name, command->name);
 }

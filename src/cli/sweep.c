@@ -6,21 +6,28 @@
 #include "table/table.h"
 #include <roadglint/sweep.h>
 #include <roadglint/version.h>
+#include <math.h>
 #include <signal.h>
 #include <string.h>
+#include <strings.h>
 #include <unistd.h>
 
 #define TOTAL "total"                   /* the part column of the sum over all parts */
+#define LIGHT_M_S 299792458.0
+#define MOST_DEG 1e6                    /* farther round, a double keeps no fine step */
 #define MOST_ROWS 1099511627776.0       /* 2^40, a petabyte of text: nobody means it */
 
 typedef struct {
     rg_mesh_frame frame;
     rg_list_field freq, az, el;
     unsigned pol, mechanisms;
-    int n_bounces, n_threads;
+    int n_bounces;                      /* 0: not given */
+    int n_threads;
     bool complex_columns, parts, quiet;
     const char *out, *job_file;
 } sweep_job;
+
+static int bounces_of(const sweep_job *job) { return job->n_bounces > 0 ? job->n_bounces : 4; }
 
 static const char *const mechanism_name[] = {"surface", "edge", "bounce"};     /* bit i is RG_SURFACE << i */
 
@@ -42,7 +49,7 @@ static rg_status take_bounces(void *field, const char *text, rg_error *err)
 static rg_status take_out(void *field, const char *text, rg_error *err)
 {
     const size_t n = strlen(text);
-    if (strcmp(text, "-") != 0 && (n < 5 || strcmp(text + n - 4, ".csv") != 0))
+    if (strcmp(text, "-") != 0 && (n < 5 || strcasecmp(text + n - 4, ".csv") != 0))
         return rg_fail(err, RG_BAD_VALUE, "%s: the table is written as CSV; end the name in .csv", text);
     return rg_take_string(field, text, err);
 }
@@ -53,7 +60,7 @@ static const rg_option options[] = {
     {"--el", "LIST", rg_take_angle_list, offsetof(sweep_job, el), "elevations, degrees (default 0)"},
     {"--pol", "LIST", take_pol, offsetof(sweep_job, pol), "of hh,vv,hv,vh; first letter received, second transmitted (default hh,vv)"},
     {"--mechanisms", "LIST", take_mechanisms, offsetof(sweep_job, mechanisms), "of surface,edge,bounce (default surface)"},
-    {"--bounces", "N", take_bounces, offsetof(sweep_job, n_bounces), "reflections that bounce follows, 2 to 16 (default 4)"},
+    {"--bounces", "N", take_bounces, offsetof(sweep_job, n_bounces), "reflections that the mechanism bounce follows, 2 to 16 (default 4)"},
     RG_MESH_OPTIONS(sweep_job),
     {"--complex", NULL, rg_take_flag, offsetof(sweep_job, complex_columns), "add the amplitudes' columns"},
     {"--parts", NULL, rg_take_flag, offsetof(sweep_job, parts), "add one row for each part of the mesh"},
@@ -138,7 +145,7 @@ static rg_status write_head(FILE *out, const sweep_job *job, const char *path, c
     snprintf(geometry, sizeof geometry, "sha256 %s", report->geometry_sha256);
     words_of(pol, sizeof pol, job->pol, rg_table_pol_name, RG_TABLE_N_POL);
     words_of(mechanisms, sizeof mechanisms, job->mechanisms, RG_ARRAY(mechanism_name));
-    snprintf(bounces, sizeof bounces, "%d", job->n_bounces);
+    snprintf(bounces, sizeof bounces, "%d", bounces_of(job));
     const struct { const char *key, *value; } line[] = {
         {"roadglint", rg_version()}, {"mesh", file}, {"geometry", geometry}, {"frame", report->assumed}, {"el", job->el.text},
         {"az", job->az.text}, {"freq", job->freq.text}, {"pol", pol}, {"mechanisms", mechanisms},
@@ -155,7 +162,7 @@ static rg_status sweep_to(FILE *out, const sweep_job *job, const char *path, con
 {
     const rg_sweep_plan plan = {.n_el = job->el.list.n, .n_az = job->az.list.n, .n_freq = job->freq.list.n, .el_deg = job->el.list.value,
                                 .az_deg = job->az.list.value, .freq_hz = job->freq.list.value, .parts = job->parts,
-                                .n_threads = job->n_threads, .mechanisms = job->mechanisms, .n_bounces = job->n_bounces};
+                                .n_threads = job->n_threads, .mechanisms = job->mechanisms, .n_bounces = bounces_of(job)};
     row_writer writer = {.out = out, .format = {.complex_columns = job->complex_columns, .part_column = job->parts}, .job = job, .mesh = mesh,
                          .on_terminal = isatty(fileno(out))};
     for (int p = 0; p < RG_TABLE_N_POL; p++) writer.format.pol[p] = job->pol >> p & 1u;
@@ -190,6 +197,20 @@ static rg_status check_parts(const sweep_job *job, const char *path, const rg_me
     return RG_OK;
 }
 
+/* What is allowed and hardly meant: a decimal comma (77,5GHz) and a forgotten unit (77) both end far below the mesh's own size. */
+static void tell_doubts(const sweep_job *job, const char *path, const rg_mesh *mesh)
+{
+    const rg_mesh_report *report = rg_mesh_get_report(mesh);
+    double lowest_hz = job->freq.list.value[0], size2_m2 = 0.0;
+    for (size_t f = 1; f < job->freq.list.n; f++) lowest_hz = fmin(lowest_hz, job->freq.list.value[f]);
+    for (int i = 0; i < 3; i++) size2_m2 += (report->high_m[i] - report->low_m[i]) * (report->high_m[i] - report->low_m[i]);
+    if (LIGHT_M_S / lowest_hz > sqrt(size2_m2))
+        fprintf(stderr, "%s: at %g Hz the wavelength is %.3g m and the mesh only %.3g m, too small for physical optics: a frequency has a unit "
+                "(77GHz) and a decimal point (76.5GHz)\n", path, lowest_hz, LIGHT_M_S / lowest_hz, sqrt(size2_m2));
+    if (job->n_bounces > 0 && !(job->mechanisms & RG_BOUNCE))
+        fprintf(stderr, "%s: --bounces %d changes nothing without --mechanisms surface,bounce\n", path, job->n_bounces);
+}
+
 static rg_status run_job(const sweep_job *job, const char *path, rg_error *err)
 {
     rg_mesh *mesh = NULL;
@@ -199,6 +220,7 @@ static rg_status run_job(const sweep_job *job, const char *path, rg_error *err)
     rg_status status = rg_mesh_read(&mesh, path, &job->frame, err);
     if (!status && !job->quiet) rg_tell_mesh(path, mesh);
     if (!status) status = check_parts(job, path, mesh, err);
+    if (!status && !job->quiet) tell_doubts(job, path, mesh);
     if (!status) status = rg_scene_new(&scene, mesh, err);
     has_file = 1;
     if (!status) status = rg_out_file_open(&file, job->out, err);
@@ -213,18 +235,30 @@ static rg_status run_job(const sweep_job *job, const char *path, rg_error *err)
     return status;
 }
 
+/* Here and not in the sweep, which begins when the table's head is written. */
+static rg_status check_angles(const char *option, const rg_list_field *field, rg_error *err)
+{
+    for (size_t i = 0; i < field->list.n; i++)
+        if (fabs(field->list.value[i]) > MOST_DEG)
+            return rg_fail(err, RG_BAD_VALUE, "%s %g is too far round: an angle lies within a million degrees", option, field->list.value[i]);
+    return RG_OK;
+}
+
 static rg_status check_job(sweep_job *job, rg_error *err)
 {
     if (job->freq.list.n == 0) return rg_fail(err, RG_BAD_VALUE, "no frequency: add --freq 77GHz, or a list such as --freq 76GHz:81GHz/101");
     if (job->az.list.n == 0) return rg_fail(err, RG_BAD_VALUE, "no azimuth: add --az 0, or the whole circle with --az 0:359.9:0.1");
     for (size_t f = 0; f < job->freq.list.n; f++)
         if (job->freq.list.value[f] <= 0.0) return rg_fail(err, RG_BAD_VALUE, "--freq %s: a frequency must be above 0", job->freq.text);
-    return job->el.list.n > 0 ? RG_OK : rg_take_angle_list(&job->el, "0", err);
+    rg_status status = job->el.list.n > 0 ? RG_OK : rg_take_angle_list(&job->el, "0", err);
+    if (!status) status = check_angles("--el", &job->el, err);
+    if (!status) status = check_angles("--az", &job->az, err);
+    return status;
 }
 
 static rg_status run(int argc, char **argv, FILE *out, rg_error *err)
 {
-    sweep_job job = {.pol = 3u, .mechanisms = RG_SURFACE, .n_bounces = 4};
+    sweep_job job = {.pol = 3u, .mechanisms = RG_SURFACE};
     rg_job_file file = {0};
     const char *path = NULL, *job_path = rg_job_path(argc, argv);
     size_t n_positional;

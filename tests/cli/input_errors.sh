@@ -5,6 +5,13 @@ try() {
 }
 echo nothing >text.obj
 printf 'o total\nv 0 0 0\nv 0 1 0\nv 0 0 1\nf 1 2 3\n' >total.obj
+: >empty.obj
+: >empty.stl
+mkdir folder
+for mesh in empty.obj empty.stl folder; do
+    try roadglint sweep $mesh --freq 77GHz --az 0
+    try roadglint inspect $mesh
+done
 try roadglint sweep none.obj --freq 77GHz --az 0
 try roadglint sweep --freq 77GHz --az 0 -- -none.obj
 try roadglint sweep text.obj --freq 77GHz --az 0 --quiet

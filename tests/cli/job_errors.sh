@@ -18,5 +18,8 @@ job 'az: 0\naz: 1\n'
 job '- az\n'
 job 'az: "0\n'
 job 'az: 0\n'
+mkdir folder
+roadglint sweep plate.obj --job folder
+echo "folder: $?"
 roadglint sweep plate.obj --job none.yaml
 echo "none: $?"

@@ -32,7 +32,15 @@ sweep plate.obj --az 0:10
 sweep plate.obj --az 0:10:0
 sweep plate.obj --az 1,,2
 sweep plate.obj --az "$(printf 'a\nb\033c')"
+sweep plate.obj --az '0 5 10'
+sweep plate.obj --az 0..10
+sweep plate.obj -az 0
+sweep plate.obj --freq 77GHz --az 0,2e6
+sweep plate.obj --freq 77GHz --az 0 --el=-1e7
+sweep plate.obj --bounces 1
+sweep plate.obj --bounces 17
 sweep plate.obj --pol hh,xx
+sweep plate.obj --pol hh,
 sweep plate.obj --mechanisms magic
 sweep plate.obj --units parsec
 sweep plate.obj --up w
