@@ -23,10 +23,10 @@ RG_API double rg_dbsm(double complex s_m);
  *
  *    scene                   read only; any number of threads may share it
  *    n_freq                  at least 1
- *    freq_hz[n_freq]         finite and > 0, in any order
+ *    freq_hz[n_freq]         > 0 and at most 1e13, in any order
  *    s_m[n_freq][RG_N_POL]   out: metres, phase reference at the mesh's origin (0, 0, 0), e^{+jwt}; sigma = |s_m|^2
  *
- *  RG_BAD_VALUE (a frequency is not finite or not positive, an aspect is not finite), RG_NO_MEMORY. After an error s_m is as
+ *  RG_BAD_VALUE (a frequency is not positive or over 1e13, an aspect is not finite), RG_NO_MEMORY. After an error s_m is as
  *  it was.
  */
 RG_API rg_status rg_surface(const rg_scene *scene, rg_aspect aspect, size_t n_freq, const double freq_hz[],

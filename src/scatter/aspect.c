@@ -15,6 +15,8 @@
 
 #define LIGHT_SPEED_M_PER_S 299792458.0
 #define ROOT_PI 1.77245385090551602730
+/* Far above any radar; phases keep their digits up to there. */
+#define HIGHEST_HZ 1e13
 /* Pieces shorter than this share of the shortest wavelength are not cut any further where occluders crowd. */
 #define GRAIN_PER_WAVELENGTH 0.125
 
@@ -55,8 +57,8 @@ rg_status rg_aspect_job_check(const rg_aspect_job *job, rg_error *err)
 {
     if (job->n_freq == 0) return rg_fail(err, RG_BAD_VALUE, "no frequency: give at least one, such as 77GHz");
     for (size_t f = 0; f < job->n_freq; f++)
-        if (!isfinite(job->freq_hz[f]) || job->freq_hz[f] <= 0.0)
-            return rg_fail(err, RG_BAD_VALUE, "a frequency of %g Hz: it must be finite and above 0", job->freq_hz[f]);
+        if (!(job->freq_hz[f] > 0.0 && job->freq_hz[f] <= HIGHEST_HZ))
+            return rg_fail(err, RG_BAD_VALUE, "a frequency of %g Hz: it must be above 0 and no more than 10 THz", job->freq_hz[f]);
     if (job->mechanisms == 0 || job->mechanisms & ~(unsigned)(RG_SURFACE | RG_EDGE | RG_BOUNCE))
         return rg_fail(err, RG_BAD_VALUE, "no such mechanism: there are surface, edge and bounce");
     if (job->n_bounces < 2 || job->n_bounces > RG_MAX_BOUNCES)

@@ -7,6 +7,9 @@
 /* Corners of a beam: with the three of a target and the horizon's cut they make RG_POLYGON_CORNERS at the most. */
 enum { BEAM_CORNERS = RG_POLYGON_CORNERS - 4 };
 
+/* Up to so many facets in a beam it pays to hold each against all; more, and the tree is asked again. */
+enum { FEW_TARGETS = 64 };
+
 /* A plane wave e exp(jk (u.r + c)), u the unit vector toward where it comes from; e for H and for V transmitted. (7.1) */
 typedef struct { vec3 u, e[2]; double c_m; } plane_wave;
 
@@ -243,7 +246,11 @@ static bool follow(const bounce_job *job, const rg_face *face, const rg_polygon 
         const rg_polygon met = part_in_beam(&target, (const double(*)[3])beam, part->n, &horizon, mesh->report.weld_m, seen.reach_m);
         if (met.n == 0) continue;
         here->lit.n = 0;
-        if (!rg_lit_part(job->scene, &seen, &target, &met, &horizon, job->grain_m, job->lit_scratch, &here->lit)) return false;
+        /* what stands before a target in the beam was named with it; where that is much, what stands before its part is less */
+        if (!(n_targets <= FEW_TARGETS
+                  ? rg_lit_among(job->scene, &seen, &target, &met, &horizon, n_targets, here->near, job->grain_m, job->lit_scratch, &here->lit)
+                  : rg_lit_part(job->scene, &seen, &target, &met, &horizon, job->grain_m, job->lit_scratch, &here->lit)))
+            return false;
         const placed_face placed = place(mesh, &target);
         for (size_t i = 0; i < here->lit.n; i++) {
             const rg_polygon footprint = here->lit.polygon[i];

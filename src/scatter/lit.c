@@ -4,6 +4,7 @@
 #include "base/sum.h"
 #include <math.h>
 #include <stdlib.h>
+#include <string.h>
 
 /* Occluders are cut out of a part at once while that takes this many cuts and leaves this many polygons; more, and it is halved first. */
 enum { CUTS_AT_ONCE = 1000, POLYGONS_AT_ONCE = 160 };
@@ -294,13 +295,14 @@ static bool sort_by_nearness(const rg_scene *scene, const rg_seen *seen, const r
     return true;
 }
 
-bool rg_lit_part(const rg_scene *scene, const rg_seen *seen, const rg_face *face, const rg_polygon *part, const rg_horizon *horizon,
-                 double grain_m, rg_lit_scratch *scratch, rg_polygons *lit)
+/* rg_lit_part once scratch->near[0 .. n - 1] are named. */
+static bool lit_of_named(const rg_scene *scene, const rg_seen *seen, const rg_face *face, const rg_polygon *part, const rg_horizon *horizon,
+                         size_t n, double grain_m, rg_lit_scratch *scratch, rg_polygons *lit)
 {
-    size_t n, n_hiding = 0;
+    size_t n_hiding = 0;
     bool cuts_do = true;
     cutting c = start_cutting(scratch, part);
-    if (!query_prism(scene, seen, face, part, scratch, &n) || !sort_by_nearness(scene, seen, face, part, &n, scratch)) return false;
+    if (!sort_by_nearness(scene, seen, face, part, &n, scratch)) return false;
     for (size_t i = 0; i < n; i++) {
         const uint32_t near = scratch->near[i];
         rg_face other;
@@ -321,6 +323,21 @@ bool rg_lit_part(const rg_scene *scene, const rg_seen *seen, const rg_face *face
     for (size_t i = 0; i < n_hiding; i++) scratch->list[i] = (uint32_t)i;
     const lit_job job = {.face = face, .grain_m = grain_m, .scratch = scratch, .lit = lit};
     return add_halves(&job, part, 0, n_hiding);
+}
+
+bool rg_lit_part(const rg_scene *scene, const rg_seen *seen, const rg_face *face, const rg_polygon *part, const rg_horizon *horizon,
+                 double grain_m, rg_lit_scratch *scratch, rg_polygons *lit)
+{
+    size_t n;
+    return query_prism(scene, seen, face, part, scratch, &n) && lit_of_named(scene, seen, face, part, horizon, n, grain_m, scratch, lit);
+}
+
+bool rg_lit_among(const rg_scene *scene, const rg_seen *seen, const rg_face *face, const rg_polygon *part, const rg_horizon *horizon,
+                  size_t n_named, const uint32_t named[], double grain_m, rg_lit_scratch *scratch, rg_polygons *lit)
+{
+    if (!rg_make_room((void **)&scratch->near, &scratch->near_room, n_named, sizeof *scratch->near)) return false;
+    memcpy(scratch->near, named, n_named * sizeof *named);
+    return lit_of_named(scene, seen, face, part, horizon, n_named, grain_m, scratch, lit);
 }
 
 /* What of a part lies in a window across the line of sight; n = 0 where nothing does. */

@@ -33,6 +33,10 @@ extern const rg_polygon rg_whole_facet;
 bool rg_lit_part(const rg_scene *scene, const rg_seen *seen, const rg_face *face, const rg_polygon *part, const rg_horizon *horizon,
                  double grain_m, rg_lit_scratch *scratch, rg_polygons *lit);
 
+/* rg_lit_part where the caller knows named[0 .. n_named - 1], all facets that may hide anything of the part, in any order. */
+bool rg_lit_among(const rg_scene *scene, const rg_seen *seen, const rg_face *face, const rg_polygon *part, const rg_horizon *horizon,
+                  size_t n_named, const uint32_t named[], double grain_m, rg_lit_scratch *scratch, rg_polygons *lit);
+
 /* rg_lit_part for the radar itself: the cover answers for most faces, what it cannot prove is cut. */
 bool rg_lit_from_afar(const rg_scene *scene, const rg_seen *seen, const rg_cover *cover, const rg_face *face, const rg_polygon *part,
                       double grain_m, rg_lit_scratch *scratch, rg_polygons *lit);
