@@ -19,28 +19,27 @@ typedef struct {
 } cut_out;
 
 static const cut_out cut_outs[] = {
-    {"well", "body", saloon_arch_front, 0.060, {1, 0.0, 0.0}},
-    {"well", "body", saloon_arch_rear, 0.060, {1, 0.0, 0.0}},
-    {"floor", "body", saloon_floor, 0.120, {0, 0.0, 0.0}},
-    {"floor_tunnel", "floor", saloon_tunnel, 0.045, {2, 0.070, 0.0}},
-    {"glass_front", "body", saloon_glass_front, 0.045, {3, 0.004, 0.0}},
-    {"glass_rear", "body", saloon_glass_rear, 0.030, {4, 0.004, 0.0}},
-    {"glass_left", "body", saloon_glass_side_front, 0.025, {5, 0.004, 0.0}},
-    {"glass_left", "body", saloon_glass_side_rear, 0.025, {5, 0.004, 0.0}},
-    {"roof", "body", saloon_roof, 0.200, {0, 0.0, 0.0}},
-    {"grille", "body", saloon_grille, 0.025, {6, 0.030, 0.0}},
-    {"lamp_front_left", "body", saloon_lamp_front, 0.025, {7, 0.003, 0.0}},
-    {"lamp_rear_left", "body", saloon_lamp_rear, 0.025, {8, 0.003, 0.0}},
-    {"bonnet", "body", saloon_bonnet, 0.045, {0, 0.0, 0.0}},
-    {"boot", "body", saloon_boot, 0.045, {0, 0.0, 0.0}},
-    {"boot_recess", "boot", saloon_plate_recess, 0.025, {11, 0.018, 0.0}},
-    {"bumper_front", "body", saloon_bumper_front, 0.060, {0, 0.0, 0.0}},
-    {"intake", "bumper_front", saloon_intake, 0.025, {13, 0.040, 0.0}},
-    {"bumper_rear", "body", saloon_bumper_rear, 0.060, {0, 0.0, 0.0}},
-    {"door_front_left", "body", saloon_doors, 0.045, {0, 0.0, 0.0}},
-    {"door_rear_left", "door_front_left", saloon_door_rear, 0.045, {0, 0.0, 0.0}},
+    {"well", "body", saloon_arch_front, 0.060, {1, 0.0}},
+    {"well", "body", saloon_arch_rear, 0.060, {1, 0.0}},
+    {"floor", "body", saloon_floor, 0.120, {0, 0.0}},
+    {"floor_tunnel", "floor", saloon_tunnel, 0.045, {2, 0.070}},
+    {"glass_front", "body", saloon_glass_front, 0.045, {3, 0.004}},
+    {"glass_rear", "body", saloon_glass_rear, 0.030, {4, 0.004}},
+    {"glass_left", "body", saloon_glass_side_front, 0.025, {5, 0.004}},
+    {"glass_left", "body", saloon_glass_side_rear, 0.025, {5, 0.004}},
+    {"roof", "body", saloon_roof, 0.200, {0, 0.0}},
+    {"grille", "body", saloon_grille, 0.025, {6, 0.030}},
+    {"lamp_front_left", "body", saloon_lamp_front, 0.025, {7, 0.003}},
+    {"lamp_rear_left", "body", saloon_lamp_rear, 0.025, {8, 0.003}},
+    {"bonnet", "body", saloon_bonnet, 0.045, {0, 0.0}},
+    {"boot", "body", saloon_boot, 0.045, {0, 0.0}},
+    {"boot_recess", "boot", saloon_plate_recess, 0.025, {11, 0.018}},
+    {"bumper_front", "body", saloon_bumper_front, 0.060, {0, 0.0}},
+    {"intake", "bumper_front", saloon_intake, 0.025, {13, 0.040}},
+    {"bumper_rear", "body", saloon_bumper_rear, 0.060, {0, 0.0}},
+    {"door_front_left", "body", saloon_doors, 0.045, {0, 0.0}},
+    {"door_rear_left", "door_front_left", saloon_door_rear, 0.045, {0, 0.0}},
 };
-static const double groove_depth_m = 0.008;
 
 static const double floor_z_m = 0.165;
 
@@ -106,7 +105,7 @@ static facets saloon_skin(void)
     add_arch_walls(&wells, &skin, cut);
     for (int axle = 0; axle < 2; axle++) add_arch_end(&wells, saloon_axle_x_m[axle]);
     facets_remove_part(&skin, cut);
-    skin_part_panels(&skin, body, panel, groove_depth_m);
+    skin_part_panels(&skin, body, panel);
     facets_add(&skin, &wells, (vec3){0});
     facets_free(&wells);
     facets_weld(&skin);

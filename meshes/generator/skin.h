@@ -29,10 +29,9 @@ void skin_turn_edges(facets *mesh, field body, skin_limit limit);
  * stays longer than detail_m. */
 void skin_cut(facets *mesh, field body, field region, double detail_m, skin_limit limit, uint32_t from, uint32_t to);
 
-/* What becomes of the border between parts. Parts of the same panel stay together; each panel is lowered below the surface by its
- * depth, with walls; between level panels of which one has a gap, a groove of that width is opened. */
-typedef struct { int panel; double depth_m, gap_m; } skin_panel;
-/* panel[n_parts of the mesh]. The walls belong to the deeper part, grooves to the part of the lower index. */
-void skin_part_panels(facets *mesh, field body, const skin_panel panel[], double groove_depth_m);
+/* Parts of the same panel stay together; each panel is lowered below the surface by its depth, with walls where panels meet. */
+typedef struct { int panel; double depth_m; } skin_panel;
+/* panel[n_parts of the mesh]. The walls belong to the deeper part. */
+void skin_part_panels(facets *mesh, field body, const skin_panel panel[]);
 
 #endif
