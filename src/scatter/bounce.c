@@ -210,14 +210,8 @@ static bool follow(const bounce_job *job, const rg_face *face, const rg_polygon 
 /* Follows a part of many corners as two of fewer. */
 static bool follow_halves(const bounce_job *job, const rg_face *face, const rg_polygon *part, const plane_wave *arriving, int n_done)
 {
-    rg_polygon half[2] = {{0}};
-    const int middle = part->n / 2;
-    for (int i = 0; i < part->n + 2; i++) {
-        rg_polygon *h = &half[i > middle];                  /* 0 .. middle, and middle .. n, where n is 0 again */
-        const int corner = (i > middle ? i - 1 : i) % part->n;
-        h->a[h->n] = part->a[corner];
-        h->b[h->n++] = part->b[corner];
-    }
+    rg_polygon half[2];
+    rg_polygon_part(part, half);
     return follow(job, face, &half[0], arriving, n_done) && follow(job, face, &half[1], arriving, n_done);
 }
 

@@ -30,6 +30,7 @@ static void copy_polygon(rg_polygon *to, const rg_polygon *from)
 
 static void add_corner(rg_polygon *p, double a, double b)
 {
+    if (p->n == RG_POLYGON_ROOM) return;                    /* a rounding's zigzag in what should be convex; it has no area */
     p->a[p->n] = a;
     p->b[p->n] = b;
     p->n++;
@@ -63,6 +64,16 @@ bool rg_polygon_split(const rg_polygon *p, const rg_half_plane *plane, rg_polygo
     if (rg_polygon_area2(inside) < SLIVER) inside->n = 0;
     if (rg_polygon_area2(outside) < SLIVER) outside->n = 0;
     return inside->n <= RG_POLYGON_CORNERS && outside->n <= RG_POLYGON_CORNERS;
+}
+
+void rg_polygon_part(const rg_polygon *polygon, rg_polygon half[2])
+{
+    const int middle = polygon->n / 2;
+    half[0].n = half[1].n = 0;
+    for (int i = 0; i < polygon->n + 2; i++) {              /* 0 .. middle, and middle .. n, where n is 0 again */
+        const int corner = (i > middle ? i - 1 : i) % polygon->n;
+        add_corner(&half[i > middle], polygon->a[corner], polygon->b[corner]);
+    }
 }
 
 /* Some edge has all of the polygon on its far side. */

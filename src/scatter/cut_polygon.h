@@ -24,8 +24,12 @@ double rg_half_plane_at(const rg_half_plane *plane, double a, double b);
 /* Twice the area as a share of twice the facet's; positive for counter-clockwise. */
 double rg_polygon_area2(const rg_polygon *polygon);
 
-/* The two sides of a cut; a side without area comes out with n = 0. False when one has more than RG_POLYGON_CORNERS corners. */
+/* The two sides of a cut; a side without area comes out with n = 0. False when one has more than RG_POLYGON_CORNERS corners, which is
+ * one more at the most. */
 bool rg_polygon_split(const rg_polygon *polygon, const rg_half_plane *plane, rg_polygon *inside, rg_polygon *outside);
+
+/* Two polygons of about half the corners each, parted from the first corner to the middle one. */
+void rg_polygon_part(const rg_polygon *polygon, rg_polygon half[2]);
 
 /* Writes polygon without region as convex polygons to out[0 .. *n - 1]; exactly polygon itself where they do not overlap. Returns false,
  * with *n of no meaning, when room polygons do not suffice or one would have more than RG_POLYGON_CORNERS corners. */

@@ -154,6 +154,7 @@ static rg_half_plane half_way(const rg_face *face, const double p[3], const doub
 }
 
 static bool add_halves(const lit_job *job, const rg_polygon *part, size_t first, size_t n);
+static bool add_half(const lit_job *job, const rg_polygon *half, size_t first, size_t n);
 
 /* Appends what is lit of a part; the regions that may reach it are list[first .. first + n - 1]. False without memory. */
 static bool add_lit(const lit_job *job, const rg_polygon *part, size_t first, size_t n)
@@ -179,21 +180,30 @@ static bool add_halves(const lit_job *job, const rg_polygon *part, size_t first,
 
     const rg_half_plane middle = half_way(job->face, p, q);
     rg_polygon half[2];
-    rg_polygon_split(part, &middle, &half[0], &half[1]);    /* may have a corner too many to be cut, and then is halved again */
-    for (int side = 0; side < 2 && enough; side++) {
-        if (half[side].n == 0) continue;
-        size_t kept = 0;
-        bool covered = false;
-        if (!rg_make_room((void **)&scratch->list, &scratch->list_room, first + 2 * n, sizeof *scratch->list)) return false;
-        for (size_t i = 0; i < n && !covered; i++) {
-            const uint32_t region = scratch->list[first + i];
-            const reach_of_region found = reach(&scratch->region[region], &half[side]);
-            covered = found == COVERS;
-            if (found == REACHES) scratch->list[first + n + kept++] = region;
-        }
-        if (!covered) enough = add_lit(job, &half[side], first + n, kept);
-    }
+    rg_polygon_split(part, &middle, &half[0], &half[1]);
+    for (int side = 0; side < 2 && enough; side++) enough = add_half(job, &half[side], first, n);
     return enough;
+}
+
+/* What is lit of a half, by the regions of the whole that still reach it. */
+static bool add_half(const lit_job *job, const rg_polygon *half, size_t first, size_t n)
+{
+    rg_lit_scratch *scratch = job->scratch;
+    size_t kept = 0;
+    if (half->n == 0) return true;
+    if (half->n > RG_POLYGON_CORNERS) {                     /* one more than can be cut */
+        rg_polygon part[2];
+        rg_polygon_part(half, part);
+        return add_half(job, &part[0], first, n) && add_half(job, &part[1], first, n);
+    }
+    if (!rg_make_room((void **)&scratch->list, &scratch->list_room, first + 2 * n, sizeof *scratch->list)) return false;
+    for (size_t i = 0; i < n; i++) {
+        const uint32_t region = scratch->list[first + i];
+        const reach_of_region found = reach(&scratch->region[region], half);
+        if (found == COVERS) return true;
+        if (found == REACHES) scratch->list[first + n + kept++] = region;
+    }
+    return add_lit(job, half, first + n, kept);
 }
 
 /* Names the facets in the shadow prism of a part of a face. */

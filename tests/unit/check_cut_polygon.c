@@ -119,6 +119,27 @@ START_TEST(too_little_room_is_told)
 }
 END_TEST
 
+/* A corner too many is told and written nowhere else; parted in two, the polygon can be cut again. */
+START_TEST(a_corner_too_many)
+{
+    rg_polygon p = {.n = RG_POLYGON_CORNERS}, inside, outside, half[2];
+    for (int i = 0; i < p.n; i++) {
+        p.a[i] = 0.3 + 0.2 * cos(6.283185307179586 * (i + 0.5) / p.n);
+        p.b[i] = 0.3 + 0.2 * sin(6.283185307179586 * (i + 0.5) / p.n);
+    }
+    /* through the middles of the two sides at corner 0, which it takes off */
+    const rg_half_plane corner = left_of(0.5 * (p.a[0] + p.a[11]), 0.5 * (p.b[0] + p.b[11]), 0.5 * (p.a[0] + p.a[1]), 0.5 * (p.b[0] + p.b[1]));
+    const rg_half_plane middle = left_of(0.3, 0.0, 0.3, 1.0);
+    ck_assert(!rg_polygon_split(&p, &corner, &inside, &outside));
+    ck_assert_int_eq(inside.n > outside.n ? inside.n : outside.n, RG_POLYGON_CORNERS + 1);
+    rg_polygon_part(inside.n > outside.n ? &inside : &outside, half);
+    ck_assert(half[0].n < RG_POLYGON_CORNERS && half[1].n < RG_POLYGON_CORNERS);
+    const double whole_area2 = rg_polygon_area2(inside.n > outside.n ? &inside : &outside);
+    ck_assert_double_eq_tol(rg_polygon_area2(&half[0]) + rg_polygon_area2(&half[1]), whole_area2, 1e-15);
+    ck_assert(rg_polygon_split(&p, &middle, &inside, &outside));
+}
+END_TEST
+
 int main(void)
 {
     Suite *suite = suite_create("cut_polygon");
@@ -127,6 +148,7 @@ int main(void)
     tcase_add_loop_test(tests, neighbours_leave_no_crack, 0, 200);
     tcase_add_test(tests, apart_leaves_the_polygon_whole);
     tcase_add_test(tests, too_little_room_is_told);
+    tcase_add_test(tests, a_corner_too_many);
     suite_add_tcase(suite, tests);
     return run_suite(suite);
 }
