@@ -5,6 +5,12 @@ import atexit, json, math, os, shutil, struct, subprocess, sys, tempfile
 program = os.path.abspath(sys.argv[1])
 failed = 0
 
+# A sanitizer's build: what fontconfig keeps until the end is not ours.
+suppressions = tempfile.NamedTemporaryFile("w", suffix=".suppressions")
+suppressions.write("leak:libfontconfig\n")
+suppressions.flush()
+os.environ["LSAN_OPTIONS"] = "suppressions=" + suppressions.name + ":print_suppressions=0"
+
 
 def run(*arguments):
     done = subprocess.run([program, *arguments], capture_output=True)
