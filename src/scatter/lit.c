@@ -319,7 +319,7 @@ static bool lit_of_named(const rg_scene *scene, const rg_seen *seen, const rg_fa
         if (!rg_make_room((void **)&scratch->region, &scratch->region_room, n_hiding + 1, sizeof *scratch->region)) return false;
         rg_region *region = &scratch->region[n_hiding];
         if (!rg_face_seen(&other, scene->mesh, seen, near) ||
-            !rg_occluder_region(region, face, &other, scene->mesh->report.weld_m, horizon))
+            !rg_occluder_region(region, scene->mesh, face, &other, horizon))
             continue;
         const reach_of_region found = reach(region, part);
         if (found == COVERS) return true;

@@ -41,10 +41,21 @@ static void heights(const rg_face *face, const rg_face *other, double height_m[3
 static double lowest(const double x[3]) { return fmin(x[0], fmin(x[1], x[2])); }
 static double highest(const double x[3]) { return fmax(x[0], fmax(x[1], x[2])); }
 
-/* Of two faces in one plane, is other the one before? Seen the other way round the heights change places, so just one of the two is. */
-static bool is_before(const rg_face *face, const rg_face *other, const double over_face[3], const double over_other[3])
+/* Sum of the heights of other's corners over face's plane, in the mesh's own axes: there, flush faces along an axis lie in one plane
+ * exactly, as the tree sees them too, and no turning has rounded them apart. */
+static double sum_of_heights(const rg_mesh *mesh, const rg_face *face, const rg_face *other)
 {
-    const double lead = (over_face[0] + over_face[1] + over_face[2]) - (over_other[0] + over_other[1] + over_other[2]);
+    const vec3 o = vec3_from(mesh->vertex_m[face->vertex[0]]);
+    const vec3 n = vec3_cross(vec3_sub(vec3_from(mesh->vertex_m[face->vertex[1]]), o), vec3_sub(vec3_from(mesh->vertex_m[face->vertex[2]]), o));
+    double sum = 0.0;
+    for (int i = 0; i < 3; i++) sum += vec3_dot(n, vec3_sub(vec3_from(mesh->vertex_m[other->vertex[i]]), o));
+    return sum / vec3_norm(n);
+}
+
+/* Of two faces in one plane, is other the one before? Seen the other way round the sums change places, so just one of the two is. */
+static bool is_before(const rg_mesh *mesh, const rg_face *face, const rg_face *other)
+{
+    const double lead = sum_of_heights(mesh, face, other) - sum_of_heights(mesh, other, face);
     return lead != 0.0 ? lead > 0.0 : other->index < face->index;
 }
 
@@ -72,8 +83,9 @@ static bool keep_within(const rg_horizon *horizon, rg_region *region, const rg_f
     return true;
 }
 
-bool rg_occluder_region(rg_region *region, const rg_face *face, const rg_face *other, double same_m, const rg_horizon *horizon)
+bool rg_occluder_region(rg_region *region, const rg_mesh *mesh, const rg_face *face, const rg_face *other, const rg_horizon *horizon)
 {
+    const double same_m = mesh->report.weld_m;
     if (apart(face, other) || apart(other, face)) return false;
 
     double over_face[3], over_other[3];
@@ -81,7 +93,7 @@ bool rg_occluder_region(rg_region *region, const rg_face *face, const rg_face *o
     heights(other, face, over_other);
     const bool same_plane = (highest(over_face) <= same_m && lowest(over_face) >= -same_m) ||
                             (highest(over_other) <= same_m && lowest(over_other) >= -same_m);
-    if (same_plane && !is_before(face, other, over_face, over_other)) return false;
+    if (same_plane && !is_before(mesh, face, other)) return false;
     if (!same_plane && (highest(over_face) <= 0.0 || lowest(over_other) >= 0.0)) return false;
 
     region->n = 3;

@@ -7,9 +7,9 @@
 /* Nothing beyond this plane hides anything: where the line of sight starts on a facet and not at infinity. In (h, v, s). */
 typedef struct { uint32_t facet; double at_m[3], normal[3]; } rg_horizon;
 
-/* The region of face that other hides; false if it hides nothing. Two faces whose planes are nearer than same_m all over one of
+/* The region of face that other hides; false if it hides nothing. Two faces whose planes are nearer than the welding tolerance all over one of
  * them lie in one plane: there the one before hides the other, and of two just alike the lower index. horizon may be NULL. */
-bool rg_occluder_region(rg_region *region, const rg_face *face, const rg_face *other, double same_m, const rg_horizon *horizon);
+bool rg_occluder_region(rg_region *region, const rg_mesh *mesh, const rg_face *face, const rg_face *other, const rg_horizon *horizon);
 
 /* The stretch of an edge that a face hides, as shares of its length from end_m[0]; false if it hides nothing. An edge that lies in the
  * face's plane, nearer than same_m, is not hidden by it.

@@ -4,7 +4,7 @@
 #include "world.h"
 #include <stdio.h>
 
-enum { N_KINDS = 5, N_SEEDS = 8, N_ASPECTS = 24 };
+enum { N_KINDS = 5, N_SEEDS = 45, N_ASPECTS = 24 };
 static const char *const kind_name[N_KINDS] = {"boxes", "soup", "slivers", "folded sheets", "cubes in cubes"};
 
 /* ---- invented targets, some 0.2 m large ---- */
