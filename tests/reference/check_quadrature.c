@@ -183,6 +183,31 @@ START_TEST(through_both_at_once)
 }
 END_TEST
 
+/* Phases that are the same to the last bit: edges along the axes, and aspects in which a component of s is a zero. */
+START_TEST(through_aspects_that_degenerate_to_the_bit)
+{
+    static const convex polygon[] = {
+        {.n = 3, .corner = {{0, 0, 0}, {0, 0.05, 0}, {0, 0, 0.04}}},
+        {.n = 3, .corner = {{0.11, -0.07, 0.02}, {0.11, -0.02, 0.02}, {0.11, -0.03, 0.05}}},
+        {.n = 4, .corner = {{-0.2, -0.01, -0.03}, {-0.2, 0.03, -0.03}, {-0.2, 0.03, 0.01}, {-0.2, -0.01, 0.01}}},
+        {.n = 6, .corner = {{0, -0.02, -0.03}, {0, 0.02, -0.03}, {0, 0.04, 0}, {0, 0.02, 0.03}, {0, -0.02, 0.03}, {0, -0.04, 0}}},
+    };
+    static const vec3 y_axis = {0, 1, 0}, z_axis = {0, 0, 1};
+    const convex *p = &polygon[_i];
+    world w = world_of_convex(p);
+    for (int i = 0; i <= 4; i++) {
+        const double tilt = 0.35 * i, c = i ? cos(tilt) : 1.0, s = i ? sin(tilt) : 0.0;
+        const vec3 upright = {c, 0, s}, level = {c, s, 0};
+        ck_assert(toward(aspect_of(upright)).y == 0.0 && toward(aspect_of(level)).z == 0.0);
+        walk(&w, p, upright, y_axis, 77e9, "along y");
+        walk(&w, p, level, z_axis, 77e9, "along z");
+    }
+    /* edge-on, to the bit: nothing is turned toward the radar */
+    compare(&w, p, y_axis, 77e9, "edge-on", 0.0);
+    free_world(&w);
+}
+END_TEST
+
 int main(void)
 {
     Suite *suite = suite_create("quadrature");
@@ -193,6 +218,7 @@ int main(void)
     tcase_add_loop_test(tests, through_aspects_at_right_angles_to_an_edge, 0, 5);
     tcase_add_loop_test(tests, through_the_normal, 0, 5);
     tcase_add_test(tests, through_both_at_once);
+    tcase_add_loop_test(tests, through_aspects_that_degenerate_to_the_bit, 0, 4);
     suite_add_tcase(suite, tests);
     return run_suite(suite);
 }

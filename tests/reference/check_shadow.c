@@ -138,10 +138,10 @@ START_TEST(a_square_millimetre_removes_its_shadow)
 }
 END_TEST
 
-/* A strip of a 5 mm lattice: many small shadows on one facet, which then has to be halved (more occluders than one cutting takes). */
+/* A thousand small squares in a lattice: more occluders on one facet than one cutting takes, which then has to be halved. */
 START_TEST(many_small_shadows)
 {
-    enum { N = 24 };
+    enum { N = 32 };
     const double x = 0.05, half = 0.001;
     soup s = {0};
     add_rectangle(&s, 0.0, -0.5, -0.5, 0.5, 0.5, 1);
@@ -183,6 +183,66 @@ START_TEST(an_occluder_that_pierces)
 }
 END_TEST
 
+/* A rectangle in the plane x, by its sides. */
+typedef struct { double y0, z0, y1, z1; } window;
+
+static window moved(window w, double dy, double dz) { return (window){w.y0 + dy, w.z0 + dz, w.y1 + dy, w.z1 + dz}; }
+
+static window overlap(window a, window b)
+{
+    const window w = {fmax(a.y0, b.y0), fmax(a.z0, b.z0), fmin(a.y1, b.y1), fmin(a.z1, b.z1)};
+    return w.y0 < w.y1 && w.z0 < w.z1 ? w : (window){0};
+}
+
+static double complex sent(double x, window w, vec3 s) { return rectangle(x, w.y0, w.z0, w.y1, w.z1, s); }
+
+/* All of outer but for the hole. */
+static void add_frame(soup *s, double x, window outer, window hole)
+{
+    add_rectangle(s, x, outer.y0, outer.z0, outer.y1, hole.z0, 1);
+    add_rectangle(s, x, outer.y0, hole.z1, outer.y1, outer.z1, 1);
+    add_rectangle(s, x, outer.y0, hole.z0, hole.y0, hole.z1, 1);
+    add_rectangle(s, x, hole.y1, hole.z0, outer.y1, hole.z1, 1);
+}
+
+/* Through the hole a piece of the plate behind is seen, of the hole's size and shape. The frame's rectangles share no whole edges. */
+START_TEST(a_plate_behind_a_hole)
+{
+    const double x = 0.2;
+    const window front = {-0.6, -0.6, 0.6, 0.6}, hole = {-0.05, -0.03, 0.08, 0.06}, back = {-0.35, -0.3, 0.35, 0.3};
+    soup s = {0};
+    add_frame(&s, x, front, hole);
+    add_rectangle(&s, 0.0, back.y0, back.z0, back.y1, back.z1, 1);
+    world w = world_of_soup(&s);
+    for (int i = 0; i < N_SMALL; i++) {
+        const vec3 to = toward(aspect_deg(small_aspect[i][0], small_aspect[i][1]));
+        const window shown = overlap(back, moved(hole, -x * to.y / to.x, -x * to.z / to.x));
+        expect(&w, sent(x, front, to) - sent(x, hole, to) + sent(0.0, shown, to), i, peak_of(1.44), "plate behind a hole");
+    }
+    free_world(&w);
+}
+END_TEST
+
+/* A plate before another one that has a hole: its shadow lies partly on the frame, partly in the hole, where there is nothing to hide. */
+START_TEST(a_shadow_over_a_hole)
+{
+    const double x = 0.1;
+    const window plate = {-0.5, -0.5, 0.5, 0.5}, hole = {-0.05, -0.03, 0.08, 0.06}, cover = {0.01, -0.12, 0.19, 0.04};
+    soup s = {0};
+    add_frame(&s, 0.0, plate, hole);
+    add_rectangle(&s, x, cover.y0, cover.z0, cover.y1, cover.z1, 1);
+    world w = world_of_soup(&s);
+    for (int i = 0; i < N_SMALL; i++) {
+        const vec3 to = toward(aspect_deg(small_aspect[i][0], small_aspect[i][1]));
+        const window shadow = moved(cover, -x * to.y / to.x, -x * to.z / to.x);
+        const double complex want = sent(0.0, plate, to) - sent(0.0, hole, to) - sent(0.0, shadow, to) + sent(0.0, overlap(shadow, hole), to) +
+                                    sent(x, cover, to);
+        expect(&w, want, i, peak_of(1.0), "shadow over a hole");
+    }
+    free_world(&w);
+}
+END_TEST
+
 int main(void)
 {
     Suite *suite = suite_create("shadow");
@@ -194,6 +254,8 @@ int main(void)
     tcase_add_test(tests, a_square_millimetre_removes_its_shadow);
     tcase_add_test(tests, many_small_shadows);
     tcase_add_test(tests, an_occluder_that_pierces);
+    tcase_add_test(tests, a_plate_behind_a_hole);
+    tcase_add_test(tests, a_shadow_over_a_hole);
     suite_add_tcase(suite, tests);
     return run_suite(suite);
 }

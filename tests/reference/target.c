@@ -39,7 +39,8 @@ static rg_status take_next(double *value, rg_dimension dimension, word_list *wor
     return rg_take_quantity(value, dimension, word, err);
 }
 
-static rg_status take_options(target_options *options, word_list *words, rg_error *err)
+/* allowed: the names of those that mean something to this target. */
+static rg_status take_options(target_options *options, const char *allowed, word_list *words, rg_error *err)
 {
     const struct { const char *name; rg_dimension dimension; double *value; } known[] = {
         {"sagitta", RG_LENGTH, &options->sagitta_m},
@@ -52,6 +53,7 @@ static rg_status take_options(target_options *options, word_list *words, rg_erro
         size_t i = 0;
         while (i < n_known && strcmp(word, known[i].name) != 0) i++;
         if (i == n_known) return rg_fail(err, RG_BAD_VALUE, "\"%s\" in a target: after its sizes come sagitta, edge, roll or unit", word);
+        if (!strstr(allowed, word)) return rg_fail(err, RG_BAD_VALUE, "this target has no use for %s: it takes %s", word, allowed);
         const rg_status status = take_next(known[i].value, known[i].dimension, words, word, err);
         if (status) return status;
     }
@@ -89,7 +91,7 @@ static rg_status take_triangle(rg_mesh **out, word_list *words, target_options *
     rg_status status = RG_OK;
     for (int i = 0; i < TRIANGLE_NUMBERS && !status; i++)
         status = take_next(&corner_m[i / 3][i % 3], RG_LENGTH, words, "a coordinate (triangle X Y Z X Y Z X Y Z)", err);
-    if (!status) status = take_options(options, words, err);
+    if (!status) status = take_options(options, "roll", words, err);
     return status ? status : rg_mesh_from_arrays(out, 3, (const double(*)[3])corner_m, 1, facet, NULL, 0, NULL, err);
 }
 
@@ -100,7 +102,7 @@ static rg_status take_file(rg_mesh **out, word_list *words, const char *folder, 
     if (!file) return rg_fail(err, RG_BAD_VALUE, "\"mesh\" without a file: write mesh FILE");
     const int n = snprintf(path, sizeof path, "%s%s%s", file[0] == '/' ? "" : folder, file[0] == '/' ? "" : "/", file);
     if (n < 0 || (size_t)n >= sizeof path) return rg_fail(err, RG_BAD_VALUE, "the path of \"%s\" is too long", file);
-    const rg_status status = take_options(options, words, err);
+    const rg_status status = take_options(options, "unit, roll", words, err);
     return status ? status : rg_mesh_read(out, path, &(rg_mesh_frame){.unit_m = options->unit_m}, err);
 }
 
@@ -120,7 +122,7 @@ static rg_status take_shape(rg_mesh **out, const char *name, word_list *words, t
         while (variant && i < n_shapes && (!shape_words[i].variant || strcmp(variant, shape_words[i].variant) != 0)) i++;
         if (!variant || i == n_shapes) return rg_fail(err, RG_BAD_VALUE, "a trihedral's faces are triangular, square or circular");
     }
-    if (!status) status = take_options(options, words, err);
+    if (!status) status = take_options(options, "sagitta, edge, roll", words, err);
     if (status) return status;
     shape.kind = shape_words[i].kind;
     shape.sagitta_m = options->sagitta_m;

@@ -56,6 +56,17 @@ static inline void add_box(soup *s, vec3 low, vec3 high)
     for (int f = 0; f < 6; f++) add_quad(s, p[face[f][0]], p[face[f][1]], p[face[f][2]], p[face[f][3]]);
 }
 
+/* A corner, a box and a tilted plate with a step before them: faces that light, hide and mirror each other. Invented. */
+static inline soup awkward_target(void)
+{
+    soup s = {0};
+    add_box(&s, (vec3){-0.05, -0.08, -0.06}, (vec3){0.02, 0.03, 0.05});
+    add_box(&s, (vec3){0.05, -0.02, -0.01}, (vec3){0.06, 0.015, 0.02});
+    add_quad(&s, (vec3){0, 0.05, -0.05}, (vec3){0.03, 0.11, -0.04}, (vec3){0.04, 0.1, 0.05}, (vec3){0.01, 0.04, 0.04});
+    add_triangle(&s, (vec3){0, 0, 0.09}, (vec3){0.07, 0.02, 0.08}, (vec3){0.01, 0.06, 0.12});
+    return s;
+}
+
 static inline world world_of_mesh(rg_mesh *mesh)
 {
     world w = {.mesh = mesh};
@@ -63,22 +74,25 @@ static inline world world_of_mesh(rg_mesh *mesh)
     return w;
 }
 
-/* Takes the soup, which is empty afterwards. */
-static inline world world_of_soup(soup *s)
+/* Takes the soup, which is empty afterwards. part[n] is below n_parts <= 4, whose names are a, b, c, d; NULL: one part. */
+static inline world world_of_parts(soup *s, const uint32_t part[], size_t n_parts)
 {
+    static const char *const name[] = {"a", "b", "c", "d"};
     rg_mesh *mesh = NULL;
     rg_error err = {{0}};
     uint32_t(*facet)[3] = malloc(s->n * sizeof *facet);
     ck_assert_ptr_nonnull(facet);
     for (size_t i = 0; i < s->n; i++)
         for (size_t c = 0; c < 3; c++) facet[i][c] = (uint32_t)(3 * i + c);
-    ck_assert_msg(rg_mesh_from_arrays(&mesh, 3 * s->n, (const double(*)[3])s->corner_m, s->n, (const uint32_t(*)[3])facet, NULL, 0, NULL, &err) == RG_OK,
-                  "%s", err.text);
+    ck_assert_msg(rg_mesh_from_arrays(&mesh, 3 * s->n, (const double(*)[3])s->corner_m, s->n, (const uint32_t(*)[3])facet, part, n_parts,
+                                      n_parts ? name : NULL, &err) == RG_OK, "%s", err.text);
     free(facet);
     free(s->corner_m);
     *s = (soup){0};
     return world_of_mesh(mesh);
 }
+
+static inline world world_of_soup(soup *s) { return world_of_parts(s, NULL, 0); }
 
 static inline world world_of_shape(rg_shape shape)
 {
@@ -136,6 +150,12 @@ static inline double random_between(uint64_t *state, double low, double high)
     z = (z ^ z >> 30) * 0xbf58476d1ce4e5b9u;
     z = (z ^ z >> 27) * 0x94d049bb133111ebu;
     return low + (high - low) * (double)((z ^ z >> 31) >> 11) * 0x1p-53;
+}
+
+static inline void random_aspect(uint64_t *state, double *az_deg, double *el_deg)
+{
+    *az_deg = random_between(state, -180.0, 180.0);
+    *el_deg = random_between(state, -80.0, 80.0);
 }
 
 static inline double seconds(void)
