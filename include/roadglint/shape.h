@@ -26,9 +26,10 @@ typedef enum {
  *  right phase. All of a shape is nearer than sagitta_m to the true surface. (The guardrail's bends have their corners on the true
  *  section.) A flat shape has no use for sagitta_m.
  *
- *  What that costs in physical optics, a cylinder and a sphere of 50 mm radius at 77 GHz against their closed forms: lambda/64 up to
- *  0.3 dB, lambda/256 0.1 dB, lambda/512 0.02 dB. The rest is not phase but pattern: flat facets wider than lambda/2 have grating lobes
- *  of their own. */
+ *  What that costs in physical optics at 77 GHz against closed forms, worst of many aspects: a cylinder of 50 mm radius is up to 0.3 dB off
+ *  at lambda/64, 0.17 dB at lambda/256, 0.023 dB at lambda/512. The rest is not phase but pattern: flat facets wider than lambda/2 have
+ *  grating lobes of their own. So it follows the radius too and does not fall steadily: at lambda/512 it is 0.15 dB for 70 mm; at
+ *  lambda/1024 at most 0.05 dB from 10 to 300 mm. */
 typedef struct {
     rg_shape_kind kind;
     double size_m[3];
