@@ -1,12 +1,16 @@
-/* read_ply.c - PLY, text and binary in both byte orders, with properties of any type in any order */
+/* read_ply.c - PLY, text and binary in both byte orders, with properties of any type in any order
+ *
+ * A face's part is its single number "part", when it has one; "comment part I NAME" in the head names part I.
+ */
 #include "base/vec3.h"
 #include "mesh/bytes.h"
 #include "mesh/readers.h"
 #include "mesh/text.h"
+#include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
 
-enum { MAX_ELEMENTS = 32, MAX_PROPERTIES = 128 };
+enum { MAX_ELEMENTS = 32, MAX_PROPERTIES = 128, MAX_PARTS = 1 << 20 };
 
 typedef enum { NO_TYPE, WHOLE_SIGNED, WHOLE, SINGLE, DOUBLE } number_kind;
 typedef struct { number_kind kind; size_t size; } type;
@@ -14,7 +18,7 @@ typedef struct {
     type counter;       /* of a list; kind NO_TYPE: a single number */
     type value;
     int axis;           /* of a vertex: 0, 1, 2; else -1 */
-    bool corners;       /* of a face */
+    bool corners, part; /* of a face */
 } property;
 typedef struct {
     size_t n, n_properties;
@@ -22,7 +26,14 @@ typedef struct {
 } element;
 
 typedef struct {
+    bool there;         /* it is named, or a face belongs to it */
+    rg_word name;       /* empty: not named */
+    uint32_t part;      /* of the soup */
+} numbered_part;
+
+typedef struct {
     rg_text text;       /* binary: at alone counts */
+    rg_text head;
     bool binary, big_endian;
     size_t n_elements, n_properties;
     element elements[MAX_ELEMENTS];
@@ -30,6 +41,9 @@ typedef struct {
     const element *vertices, *faces;
     uint32_t *corner;
     size_t corners_held;
+    bool has_parts;
+    numbered_part *numbered;    /* [n_numbered], by the file's numbers */
+    size_t n_numbered, numbered_held;
 } ply;
 
 bool rg_is_ply(const rg_file *file) { return file->n >= 4 && memcmp(file->text, "ply", 3) == 0 && (file->text[3] == '\n' || file->text[3] == '\r'); }
@@ -95,6 +109,7 @@ static rg_status take_property(ply *p, rg_error *err)
     const rg_word name = rg_word_in_line(&p->text);
     if (e == p->vertices && !list && name.n == 1 && name.at[0] >= 'x' && name.at[0] <= 'z') prop.axis = name.at[0] - 'x';
     if (e == p->faces && list) prop.corners = rg_word_is(name, "vertex_indices") || rg_word_is(name, "vertex_index");
+    if (e == p->faces && !list && !p->has_parts) p->has_parts = prop.part = rg_word_is(name, "part");
     e->n_properties++;
     p->properties[p->n_properties++] = prop;
     return RG_OK;
@@ -105,10 +120,12 @@ static rg_status take_head(ply *p, rg_error *err)
     bool formatted = false;
     char shown[48];
     rg_next_line(&p->text);
+    p->head = p->text;
     for (rg_status status; p->text.at < p->text.end; rg_next_line(&p->text)) {
         const rg_word word = rg_word_in_line(&p->text);
         status = RG_OK;
         if (rg_word_is(word, "end_header")) {
+            p->head.end = word.at;
             rg_next_line(&p->text);
             return formatted ? RG_OK : rg_fail(err, RG_BAD_INPUT, "its head does not say its format");
         }
@@ -262,23 +279,91 @@ static rg_status take_corners(ply *p, const property *prop, size_t n_vertices, s
     return status;
 }
 
+static bool is_part(double value) { return value >= 0.0 && value < MAX_PARTS && value == floor(value); }
+
+/* Takes note of the part of that number; is_part of it holds. */
+static rg_status note_part(ply *p, size_t number, rg_error *err)
+{
+    if (number >= p->numbered_held) {
+        const size_t held = number < MAX_PARTS / 2 ? 2 * number + 16 : MAX_PARTS;
+        numbered_part *numbered = realloc(p->numbered, held * sizeof *numbered);
+        if (!numbered) return rg_fail(err, RG_NO_MEMORY, "no memory for %zu parts", number + 1);
+        p->numbered = numbered;
+        p->numbered_held = held;
+    }
+    while (p->n_numbered <= number) p->numbered[p->n_numbered++] = (numbered_part){0};
+    p->numbered[number].there = true;
+    return RG_OK;
+}
+
+/* A remark may begin with "part" by chance: only a whole number behind it makes it a name. The first name of a part counts. */
+static rg_status take_part_names(ply *p, rg_error *err)
+{
+    for (rg_text head = p->head; head.at < head.end; rg_next_line(&head)) {
+        double number;
+        if (!rg_word_is(rg_word_in_line(&head), "comment") || !rg_word_is(rg_word_in_line(&head), "part")) continue;
+        if (rg_number_of(&number, rg_word_in_line(&head)) != RG_A_NUMBER || number != floor(number)) continue;
+        if (!is_part(number))
+            return rg_fail(err, RG_BAD_INPUT, "line %zu: it names part %.10g, but parts are numbered from 0 to %d", head.line, number,
+                           MAX_PARTS - 1);
+        const rg_status status = note_part(p, (size_t)number, err);
+        if (status) return status;
+        rg_text rest = head;
+        const rg_word name = rg_rest_of_line(&rest);
+        if (p->numbered[(size_t)number].name.n == 0) p->numbered[(size_t)number].name = name;
+    }
+    return RG_OK;
+}
+
+static rg_status take_part(ply *p, const property *prop, uint32_t *number, size_t face, rg_error *err)
+{
+    double value;
+    const rg_status status = take_number(p, prop->value, &value, err);
+    if (status) return status;
+    if (!is_part(value))
+        return rg_fail(err, RG_BAD_INPUT, "face %zu belongs to part %.10g, but parts are whole numbers from 0 to %d", face + 1, value,
+                       MAX_PARTS - 1);
+    *number = (uint32_t)value;
+    return note_part(p, *number, err);
+}
+
+/* Parts in the order of their numbers, without the numbers that the file does not use; numbers of one name are one part, as in every
+ * format. Until here facets have the file's numbers. */
+static rg_status settle_parts(ply *p, rg_soup *soup, size_t first_facet, rg_error *err)
+{
+    rg_status status = RG_OK;
+    for (size_t i = 0; i < p->n_numbered && !status; i++) {
+        numbered_part *const numbered = &p->numbered[i];
+        char bare[32];
+        rg_word name = numbered->name;
+        if (!numbered->there) continue;
+        if (name.n == 0) name = (rg_word){bare, (size_t)snprintf(bare, sizeof bare, "part %zu", i)};
+        status = rg_soup_part(soup, &numbered->part, name.at, name.n, err);
+    }
+    for (size_t f = first_facet; f < soup->n_facets && !status; f++) soup->part[f] = p->numbered[soup->part[f]].part;
+    return status;
+}
+
 static rg_status take_faces(ply *p, rg_soup *soup, rg_error *err)
 {
     const element *e = p->faces;
-    uint32_t part;
-    rg_status status = rg_soup_part(soup, &part, "", 0, err);
+    const size_t first_facet = soup->n_facets;
+    uint32_t part = 0;
+    rg_status status = p->has_parts ? take_part_names(p, err) : rg_soup_part(soup, &part, "", 0, err);
     if (!status && e->n <= RG_FACETS_MAX) status = rg_soup_reserve(soup, 0, e->n, err);
     for (size_t i = 0; i < e->n && !status; i++) {
         size_t n = 0;
         bool taken = false;
         for (size_t k = 0; k < e->n_properties && !status; k++) {
-            const bool take = e->properties[k].corners && !taken;
-            status = take ? take_corners(p, &e->properties[k], soup->n_vertices, &n, i, err) : skip_property(p, &e->properties[k], err);
+            const property *prop = &e->properties[k];
+            const bool take = prop->corners && !taken;
+            status = take ? take_corners(p, prop, soup->n_vertices, &n, i, err) :
+                     prop->part ? take_part(p, prop, &part, i, err) : skip_property(p, prop, err);
             taken = taken || take;
         }
         if (!status) status = rg_soup_face(soup, n, p->corner, part, err);
     }
-    return status;
+    return status || !p->has_parts ? status : settle_parts(p, soup, first_facet, err);
 }
 
 /* Faces may stand before the vertices: they are passed over, and read when all vertices are there. */
@@ -309,6 +394,7 @@ rg_status rg_read_ply(rg_soup *soup, const rg_file *file, rg_error *err)
     if (!status) status = check_head(p, err);
     if (!status) status = take_elements(p, soup, err);
     free(p->corner);
+    free(p->numbered);
     free(p);
     return status;
 }

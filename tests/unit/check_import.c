@@ -356,6 +356,114 @@ START_TEST(every_way_to_write_a_ply)
 }
 END_TEST
 
+/* Three facets whose areas 1, 2 and 3 tell them apart, of the parts in the text; remarks stand in the head. */
+static const char *ply_of_parts(const char *remarks, const char *type, const char *part0, const char *part1, const char *part2)
+{
+    char text[1024];
+    snprintf(text, sizeof text, "ply\nformat ascii 1.0\n%selement vertex 9\nproperty float x\nproperty float y\nproperty float z\n"
+             "element face 3\nproperty %s part\nproperty list uchar int vertex_indices\nproperty uchar part\nend_header\n"
+             "0 0 0 2 0 0 0 1 0 0 0 1 2 0 1 0 2 1 0 0 2 2 0 2 0 3 2\n%s 3 0 1 2 0\n%s 3 3 4 5 0\n%s 3 6 7 8 0\n", remarks, type, part0, part1, part2);
+    return write_text("parts.ply", text);
+}
+
+static const struct { const char *remarks, *type, *part[3]; size_t n; struct { const char *name; double area_m2; } want[4]; } ply_parts[] = {
+    {"comment part 0 roof\ncomment part 1 left  door\r\ncomment part 2 glass\n", "uchar", {"2", "0", "1"}, 3,
+     {{"roof", 2.0}, {"left  door", 3.0}, {"glass", 1.0}}},
+    {"", "int", {"1048575", "7", "7"}, 2, {{"part 7", 5.0}, {"part 1048575", 1.0}}},
+    {"comment part 1 bonnet\n", "float", {"1", "0.0", "1e0"}, 2, {{"part 0", 2.0}, {"bonnet", 4.0}}},
+    {"comment part 3 unused\ncomment part 3 again\ncomment part 4\n", "ushort", {"4", "4", "4"}, 2, {{"unused", 0.0}, {"part 4", 6.0}}},
+    {"comment part 0 wheel\ncomment part 5 wheel\ncomment part 6 hub\n", "char", {"0", "6", "5"}, 2, {{"wheel", 4.0}, {"hub", 2.0}}},
+    {"comment part of a fence\ncomment part\ncomment part 1.5 m long\ncomment\ncomment parts 0 x\n", "double", {"0", "0", "0"}, 1, {{"part 0", 6.0}}},
+    {"comment part 0 a\x1b[2J\xff\n", "short", {"0", "0", "0"}, 1, {{"a_[2J_", 6.0}}},
+};
+
+START_TEST(ply_parts_have_their_names_and_facets)
+{
+    rg_mesh *mesh = read_good(ply_of_parts(ply_parts[_i].remarks, ply_parts[_i].type, ply_parts[_i].part[0], ply_parts[_i].part[1],
+                                           ply_parts[_i].part[2]), NULL);
+    ck_assert_uint_eq(mesh->n_parts, ply_parts[_i].n);
+    for (size_t p = 0; p < mesh->n_parts; p++) {
+        ck_assert_str_eq(rg_mesh_part_name(mesh, p), ply_parts[_i].want[p].name);
+        ck_assert_double_eq_tol(rg_mesh_part_area_m2(mesh, p), ply_parts[_i].want[p].area_m2, 1e-14);
+    }
+    rg_mesh_free(mesh);
+}
+END_TEST
+
+/* Neither a list of that name, nor one at the vertices, nor remarks alone make parts. */
+START_TEST(a_ply_without_parts_is_one)
+{
+    rg_mesh *mesh = read_good(write_text("a.ply", "ply\nformat ascii 1.0\ncomment part 0 roof\ncomment part -1 x\nelement vertex 3\n"
+        "property float x\nproperty float y\nproperty float z\nproperty int part\nelement face 1\nproperty list uchar int part\n"
+        "property list uchar int vertex_index\nend_header\n0 0 0 5 3 0 0 6 0 2 0 -7\n1 9 3 0 1 2\n"), NULL);
+    ck_assert_uint_eq(mesh->n_parts, 1);
+    ck_assert_str_eq(rg_mesh_part_name(mesh, 0), "mesh");
+    rg_mesh_free(mesh);
+}
+END_TEST
+
+static const struct { const char *remarks, *type, *part, *says; } bad_parts[] = {
+    {"", "int",    "-1",         "face 2 belongs to part -1, but parts are whole numbers from 0 to 1048575"},
+    {"", "int",    "1048576",    "face 2 belongs to part 1048576"},
+    {"", "uint",   "4294967295", "face 2 belongs to part 4294967295"},
+    {"", "double", "1e300",      "face 2 belongs to part 1e+300"},
+    {"", "float",  "0.5",        "face 2 belongs to part 0.5"},
+    {"", "float",  "nan",        "face 2 belongs to part nan"},
+    {"", "float",  "-inf",       "face 2 belongs to part nan"},
+    {"", "int",    "roof",       "\"roof\" is no number"},
+    {"comment part -1 roof\n", "int", "0", "line 3: it names part -1, but parts are numbered from 0 to 1048575"},
+    {"comment\ncomment part 1048576 roof\n", "int", "0", "line 4: it names part 1048576"},
+    {"comment part 99999999999999999999999 roof\n", "int", "0", "line 3: it names part 1e+23"},
+};
+
+START_TEST(a_part_that_cannot_be_is_refused)
+{
+    read_bad(ply_of_parts(bad_parts[_i].remarks, bad_parts[_i].type, "0", bad_parts[_i].part, "0"), bad_parts[_i].says);
+}
+END_TEST
+
+/* A binary PLY whose last bytes are a part of every type, in both orders: cut anywhere it is refused; some bits are no part. */
+static void write_part(int format, const char *type, double value)
+{
+    snprintf(test_path, sizeof test_path, "%s/a.ply", test_folder);
+    ply_out out = {fopen(test_path, "wb"), format};
+    fprintf(out.file, "ply\nformat binary_%s_endian 1.0\ncomment part 3 roof\nelement vertex 3\nproperty char x\nproperty char y\n"
+            "property char z\nelement face 1\nproperty list uchar uchar vertex_indices\nproperty %s part\nend_header\n",
+            format == 1 ? "little" : "big", type);
+    static const int numbers[] = {0, 0, 0, 3, 0, 0, 0, 2, 0, 3, 0, 1, 2};
+    for (size_t i = 0; i < sizeof numbers / sizeof numbers[0]; i++) put(&out, "char", numbers[i]);
+    put(&out, type, value);
+    fclose(out.file);
+}
+
+START_TEST(binary_parts_of_every_type)
+{
+    static unsigned char bytes[512];
+    const char *const type = ply_types[_i / 2];
+    const int format = 1 + _i % 2;
+    write_part(format, type, 3.0);
+    rg_mesh *mesh = read_good(test_path, NULL);
+    ck_assert_uint_eq(mesh->n_parts, 1);
+    ck_assert_str_eq(rg_mesh_part_name(mesh, 0), "roof");
+    rg_mesh_free(mesh);
+    FILE *file = fopen(test_path, "rb");
+    const size_t n = fread(bytes, 1, sizeof bytes, file);
+    fclose(file);
+    for (size_t cut = 0; cut < n; cut++)
+        ck_assert_msg(read_any(write_bytes("a.ply", bytes, cut)) == RG_BAD_INPUT, "cut at %zu of %zu it is read", cut, n);
+    const bool whole = type[0] != 'f' && type[0] != 'd';
+    if (whole && type[0] == 'u') return;
+    write_part(format, type, -1.0);
+    read_bad(test_path, "face 1 belongs to part -1,");
+    if (whole) return;
+    static const double none[] = {NAN, INFINITY, -INFINITY, 1e30, 2.5};
+    for (size_t i = 0; i < sizeof none / sizeof none[0]; i++) {
+        write_part(format, type, none[i]);
+        read_bad(test_path, "face 1 belongs to part ");
+    }
+}
+END_TEST
+
 /* Any file of ours, cut anywhere, is read or refused; binary ones are refused wherever they are cut. */
 START_TEST(cut_short_anywhere_they_do_no_harm)
 {
@@ -407,6 +515,10 @@ int main(void)
     tcase_add_test(tests, stl_text_has_a_part_per_solid);
     tcase_add_test(tests, stl_binary_is_known_by_its_size);
     tcase_add_loop_test(tests, every_way_to_write_a_ply, 0, 48);
+    tcase_add_loop_test(tests, ply_parts_have_their_names_and_facets, 0, sizeof ply_parts / sizeof ply_parts[0]);
+    tcase_add_test(tests, a_ply_without_parts_is_one);
+    tcase_add_loop_test(tests, a_part_that_cannot_be_is_refused, 0, sizeof bad_parts / sizeof bad_parts[0]);
+    tcase_add_loop_test(tests, binary_parts_of_every_type, 0, 16);
     tcase_add_loop_test(tests, cut_short_anywhere_they_do_no_harm, 0, 6);
     suite_add_tcase(suite, tests);
     return run_suite(suite);

@@ -91,6 +91,15 @@ static void same_geometry(const rg_mesh *a, const rg_mesh *b, double step_m)
             }
 }
 
+static void same_parts(const rg_mesh *a, const rg_mesh *b)
+{
+    ck_assert_uint_eq(a->n_parts, b->n_parts);
+    for (size_t p = 0; p < a->n_parts; p++) {
+        ck_assert_str_eq(b->part_name[p], a->part_name[p]);
+        ck_assert_uint_eq(b->part_first[p + 1], a->part_first[p + 1]);
+    }
+}
+
 /* Doubles survive to the last rounding of adding the origin; STL keeps 24 bits. */
 START_TEST(meshes_come_back)
 {
@@ -106,13 +115,7 @@ START_TEST(meshes_come_back)
         rg_mesh *back = read_from(format[_i].name);
         same_geometry(mesh, back, 8.0 * format[_i].step);
         ck_assert_uint_eq(back->report.n_closed_shells, mesh->report.n_closed_shells);
-        if (_i == 0) {
-            ck_assert_uint_eq(back->n_parts, mesh->n_parts);
-            for (size_t p = 0; p < mesh->n_parts; p++) {
-                ck_assert_str_eq(back->part_name[p], mesh->part_name[p]);
-                ck_assert_uint_eq(back->part_first[p + 1], mesh->part_first[p + 1]);
-            }
-        }
+        if (_i < 2) same_parts(mesh, back);
         rg_mesh_free(back);
         rg_mesh_free(mesh);
     }
@@ -196,6 +199,47 @@ START_TEST(ply_has_its_head_and_its_parts)
         ck_assert_uint_eq(face[13], mesh->part[f]);
     }
     rg_mesh_free(mesh);
+    mesh = read_from("a.ply");
+    static const char *const name[] = {"front left", "empty", "grille_v 1 2 3"};
+    static const size_t n_facets[] = {2, 0, 2};
+    ck_assert_uint_eq(mesh->n_parts, 3);
+    for (size_t p = 0; p < 3; p++) {
+        ck_assert_str_eq(mesh->part_name[p], name[p]);
+        ck_assert_uint_eq(rg_mesh_part_n_facets(mesh, p), n_facets[p]);
+    }
+    rg_mesh_free(mesh);
+    remove_folder();
+}
+END_TEST
+
+/* More parts than a byte can number; each is a facet of its own height, so that none can stand for another. */
+START_TEST(ply_of_many_parts_comes_back)
+{
+    enum { N = 300 };
+    static double v[3 * N][3];
+    static uint32_t f[N][3], part[N];
+    static char text[N][16];
+    static const char *name[N];
+    rg_mesh *mesh = NULL;
+    rg_error err = {""};
+    for (uint32_t i = 0; i < N; i++) {
+        for (uint32_t k = 0; k < 3; k++) {
+            v[3 * i + k][0] = k == 1, v[3 * i + k][1] = k == 2, v[3 * i + k][2] = 0.01 * i;
+            f[i][k] = 3 * i + k;
+        }
+        part[i] = 7 * i % N;
+        snprintf(text[i], sizeof text[i], "strip %u", N - i);
+        name[i] = text[i];
+    }
+    ck_assert_msg(rg_mesh_from_arrays(&mesh, 3 * N, (const double (*)[3])v, N, (const uint32_t (*)[3])f, part, N, name, &err) == RG_OK, "%s", err.text);
+    make_folder();
+    write_to(mesh, "many.ply");
+    rg_mesh *back = read_from("many.ply");
+    ck_assert_uint_eq(back->n_parts, N);
+    same_geometry(mesh, back, 8.0 * 0x1p-51);
+    same_parts(mesh, back);
+    rg_mesh_free(back);
+    rg_mesh_free(mesh);
     remove_folder();
 }
 END_TEST
@@ -254,6 +298,7 @@ int main(void)
     tcase_add_test(tests, stl_has_its_layout);
     tcase_add_test(tests, obj_names_parts_and_keeps_doubles);
     tcase_add_test(tests, ply_has_its_head_and_its_parts);
+    tcase_add_test(tests, ply_of_many_parts_comes_back);
     tcase_add_test(tests, what_cannot_be_written_leaves_no_file);
     tcase_add_loop_test(tests, a_full_disk_leaves_the_old_file, 0, 3);
     suite_add_tcase(suite, tests);
