@@ -1,6 +1,5 @@
 /* digest.c - SHA-256 by OpenSSL's libcrypto */
 #include "base/digest.h"
-#include <errno.h>
 #include <openssl/evp.h>
 #include <stdio.h>
 #include <string.h>
@@ -23,23 +22,4 @@ void rg_digest_end(rg_digest *digest, char hex[65])
     EVP_DigestFinal_ex((EVP_MD_CTX *)digest, sum, NULL);
     EVP_MD_CTX_free((EVP_MD_CTX *)digest);
     for (size_t i = 0; i < sizeof sum; i++) snprintf(hex + 2 * i, 3, "%02x", sum[i]);
-}
-
-rg_status rg_digest_file(const char *path, char hex[65], rg_error *err)
-{
-    rg_status status = RG_OK;
-    rg_digest *digest = rg_digest_new();
-    FILE *file = fopen(path, "rb");
-    if (!digest) {
-        status = rg_fail(err, RG_NO_MEMORY, "no memory for the digest of %s", path);
-    } else if (!file) {
-        status = rg_fail(err, RG_SYSTEM, "%s: %s", path, strerror(errno));
-    } else {
-        unsigned char block[1 << 16];
-        for (size_t n; (n = fread(block, 1, sizeof block, file)) > 0;) rg_digest_add(digest, block, n);
-        if (ferror(file)) status = rg_fail(err, RG_SYSTEM, "%s: %s", path, strerror(errno));
-    }
-    if (file) fclose(file);
-    if (digest) rg_digest_end(digest, hex);
-    return status;
 }

@@ -12,7 +12,4 @@ void rg_digest_add(rg_digest *digest, const void *bytes, size_t n);
 /* Writes 64 hex digits and a 0, and frees the digest. */
 void rg_digest_end(rg_digest *digest, char hex[65]);
 
-/* Of a whole file. RG_SYSTEM (it cannot be read: the text says why), RG_NO_MEMORY. */
-rg_status rg_digest_file(const char *path, char hex[65], rg_error *err);
-
 #endif

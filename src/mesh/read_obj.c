@@ -4,7 +4,7 @@
  */
 #include "base/vec3.h"
 #include "mesh/readers.h"
-#include "mesh/text.h"
+#include "mesh/vertex_text.h"
 #include <stdlib.h>
 #include <string.h>
 
@@ -44,29 +44,13 @@ static void skip_statement(rg_text *text)
     }
 }
 
-static rg_status take_vertex(rg_soup *soup, rg_text *text, double *largest, rg_error *err)
-{
-    double v[3];
-    char shown[48];
-    for (int i = 0; i < 3; i++) {
-        const rg_word word = next_word(text);
-        const rg_number_kind kind = rg_number_of(&v[i], word);
-        if (kind == RG_NO_NUMBER)
-            return rg_fail(err, RG_BAD_INPUT, "line %zu: a vertex is three numbers, not \"%s\"", text->line, rg_shown(shown, word));
-        if (kind == RG_NOT_FINITE)
-            return rg_fail(err, RG_BAD_INPUT, "line %zu: coordinate \"%s\" is not finite", text->line, rg_shown(shown, word));
-        *largest = fmax(*largest, fabs(v[i]));
-    }
-    return rg_soup_vertex(soup, v[0], v[1], v[2], err);
-}
-
 static rg_status take_vertices(rg_soup *soup, rg_text text, rg_error *err)
 {
     double largest = 0.0;
     rg_status status = RG_OK;
     while (text.at < text.end && !status) {
         const rg_word word = rg_word_in_line(&text);
-        if (rg_word_is(word, "v")) status = take_vertex(soup, &text, &largest, err);
+        if (rg_word_is(word, "v")) status = rg_take_vertex(soup, &text, next_word, &largest, err);
         if (word.n && word.at[0] == '#') rg_next_line(&text);
         else skip_statement(&text);
     }

@@ -2,7 +2,7 @@
 #include "base/vec3.h"
 #include "mesh/bytes.h"
 #include "mesh/readers.h"
-#include "mesh/text.h"
+#include "mesh/vertex_text.h"
 #include <stdlib.h>
 #include <string.h>
 #include <strings.h>
@@ -59,22 +59,6 @@ static rg_status read_binary(rg_soup *soup, const rg_file *file, rg_error *err)
     return status;
 }
 
-static rg_status take_vertex(rg_soup *soup, rg_text *text, double *largest, rg_error *err)
-{
-    double v[3];
-    char shown[48];
-    for (int i = 0; i < 3; i++) {
-        const rg_word word = rg_word_anywhere(text);
-        const rg_number_kind kind = rg_number_of(&v[i], word);
-        if (kind == RG_NO_NUMBER)
-            return rg_fail(err, RG_BAD_INPUT, "line %zu: a vertex is three numbers, not \"%s\"", text->line, rg_shown(shown, word));
-        if (kind == RG_NOT_FINITE)
-            return rg_fail(err, RG_BAD_INPUT, "line %zu: coordinate \"%s\" is not finite", text->line, rg_shown(shown, word));
-        *largest = fmax(*largest, fabs(v[i]));
-    }
-    return rg_soup_vertex(soup, v[0], v[1], v[2], err);
-}
-
 /* The loop's corners are the vertices from first on. */
 static rg_status end_loop(rg_soup *soup, size_t first, uint32_t part, rg_error *err)
 {
@@ -113,7 +97,7 @@ static rg_status read_text(rg_soup *soup, const rg_file *file, rg_error *err)
             first = soup->n_vertices;
             state = IN_LOOP;
         } else if (state == IN_LOOP && rg_word_is_caseless(word, "vertex")) {
-            status = take_vertex(soup, &text, &largest, err);
+            status = rg_take_vertex(soup, &text, rg_word_anywhere, &largest, err);
         } else if (state == IN_LOOP && rg_word_is_caseless(word, "endloop")) {
             status = end_loop(soup, first, part, err);
             state = IN_FACET;
