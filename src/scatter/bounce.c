@@ -151,9 +151,7 @@ static rg_polygon part_in_beam(const rg_face *target, const double beam[][3], in
     rg_half_plane plane;
     double highest = 0.0;
     for (int i = 0; i < 3; i++) {
-        const double *x = target->at_m[i];
-        plane.at_corner[i] = horizon->normal[0] * (x[0] - horizon->at_m[0]) + horizon->normal[1] * (x[1] - horizon->at_m[1]) +
-                             horizon->normal[2] * (x[2] - horizon->at_m[2]);
+        plane.at_corner[i] = rg_horizon_height(horizon, target->at_m[i]);
         if (plane.at_corner[i] > highest) highest = plane.at_corner[i];
     }
     part.n = highest <= same_m ? 0 : part.n;
@@ -193,7 +191,7 @@ static bool radiate(const bounce_job *job, const rg_face *target, const placed_f
         if (!make_footprint_room(f, f->n + (size_t)g->n)) return false;
         for (int k = 1; k + 1 < g->n; k++) {
             const int corner[3] = {0, k, k + 1};
-            const double share = (g->a[k] - g->a[0]) * (g->b[k + 1] - g->b[0]) - (g->b[k] - g->b[0]) * (g->a[k + 1] - g->a[0]);
+            const double share = rg_polygon_fan_area2(g, k);
             if (share <= 0.0) continue;
             for (int c = 0; c < 3; c++)
                 f->path_m[c][f->n] = vec3_dot(to_radar, point_on(p, g->a[corner[c]], g->b[corner[c]])) + wave->c_m;

@@ -10,11 +10,15 @@ double rg_half_plane_at(const rg_half_plane *plane, double a, double b)
     return f[0] * (1.0 - a - b) + f[1] * a + f[2] * b;
 }
 
+double rg_polygon_fan_area2(const rg_polygon *p, int i)
+{
+    return (p->a[i] - p->a[0]) * (p->b[i + 1] - p->b[0]) - (p->b[i] - p->b[0]) * (p->a[i + 1] - p->a[0]);
+}
+
 double rg_polygon_area2(const rg_polygon *p)
 {
     double sum = 0.0;
-    for (int i = 1; i + 1 < p->n; i++)
-        sum += (p->a[i] - p->a[0]) * (p->b[i + 1] - p->b[0]) - (p->b[i] - p->b[0]) * (p->a[i + 1] - p->a[0]);
+    for (int i = 1; i + 1 < p->n; i++) sum += rg_polygon_fan_area2(p, i);
     return sum;
 }
 

@@ -28,6 +28,9 @@ double rg_polygon_area2(const rg_polygon *polygon);
  * one more at the most. */
 bool rg_polygon_split(const rg_polygon *polygon, const rg_half_plane *plane, rg_polygon *inside, rg_polygon *outside);
 
+/* Triangle i of the polygon as a fan, of corners 0, i and i + 1: its share of rg_polygon_area2. Under 0 only by rounding. */
+double rg_polygon_fan_area2(const rg_polygon *polygon, int i);
+
 /* Two polygons of about half the corners each, parted from the first corner to the middle one. */
 void rg_polygon_part(const rg_polygon *polygon, rg_polygon half[2]);
 

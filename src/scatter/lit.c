@@ -361,7 +361,7 @@ static rg_polygon in_window(const rg_face *face, const rg_polygon *part, const d
             const double beyond = face->at_m[i][side / 2] - window_m[side];
             plane.at_corner[i] = side % 2 == 0 ? beyond : -beyond;
         }
-        if (!rg_polygon_split(&before, &plane, &inside, &outside)) inside = before;     /* a corner too many: the rest is dark anyhow */
+        if (!rg_polygon_split(&before, &plane, &inside, &outside)) inside = before;     /* a corner too many: what stays is dark, and cut off later */
     }
     return inside;
 }
@@ -395,7 +395,7 @@ bool rg_pieces_add(rg_pieces *pieces, const rg_face *face, const rg_polygon *p)
     if (!make_piece_room(pieces, pieces->n + (size_t)p->n)) return false;
     for (int i = 1; i + 1 < p->n; i++) {
         const int corner[3] = {0, i, i + 1};
-        const double share = (p->a[i] - p->a[0]) * (p->b[i + 1] - p->b[0]) - (p->b[i] - p->b[0]) * (p->a[i + 1] - p->a[0]);
+        const double share = rg_polygon_fan_area2(p, i);
         if (share <= 0.0) continue;                         /* three corners on one line, but for rounding */
         for (int c = 0; c < 3; c++) {
             const double a = p->a[corner[c]], b = p->b[corner[c]];

@@ -62,22 +62,16 @@ static bool is_before(const rg_mesh *mesh, const rg_face *face, const rg_face *o
 /* Adds to region what the horizon leaves of other: along the line of sight over each corner of face, how far other lies within it. */
 static bool keep_within(const rg_horizon *horizon, rg_region *region, const rg_face *face, const rg_face *other, const double over_other[3])
 {
-    const double *n = horizon->normal, *m = other->normal_m2;
-    double within[3];
+    const double *m = other->normal_m2;
     int n_within = 0;
     if (other->index == horizon->facet) return false;
-    for (int i = 0; i < 3; i++) {
-        const double *x = other->at_m[i];
-        within[i] = n[0] * (x[0] - horizon->at_m[0]) + n[1] * (x[1] - horizon->at_m[1]) + n[2] * (x[2] - horizon->at_m[2]);
-        n_within += within[i] > 0.0;
-    }
+    for (int i = 0; i < 3; i++) n_within += rg_horizon_height(horizon, other->at_m[i]) > 0.0;
     if (n_within == 0) return false;
     if (n_within == 3) return true;
     const double slant = sqrt(m[0] * m[0] + m[1] * m[1] + m[2] * m[2]) / m[2];
     for (int i = 0; i < 3; i++) {
-        const double *x = face->at_m[i];
-        region->edge[region->n].at_corner[i] = n[0] * (x[0] - horizon->at_m[0]) + n[1] * (x[1] - horizon->at_m[1]) +
-                                               n[2] * (x[2] - horizon->at_m[2] - over_other[i] * slant);
+        const double *x = face->at_m[i], on_other[3] = {x[0], x[1], x[2] - over_other[i] * slant};
+        region->edge[region->n].at_corner[i] = rg_horizon_height(horizon, on_other);
     }
     region->n++;
     return true;

@@ -216,6 +216,64 @@ START_TEST(a_grating)
 }
 END_TEST
 
+/* What the cover proves is what the cutting finds: facet by facet, of soups and of a ball behind a fence, from everywhere. */
+START_TEST(the_cover_claims_nothing_else)
+{
+    static soup s;
+    s = (soup){0};
+    srand48(100 + _i);
+    for (int t = 0; t < 150; t++) {
+        double p[3][3];
+        for (int i = 0; i < 3; i++)
+            for (int a = 0; a < 3; a++) p[i][a] = i == 0 ? drand48() : p[0][a] + 0.25 * (drand48() - 0.5);
+        add_triangle(&s, p[0], p[1], p[2]);
+    }
+    enum { N = 14 };
+    for (int i = 0; i < N; i++)                             /* a sheet of joined facets, so that patches have an inside */
+        for (int k = 0; k < N; k++) {
+            double p[4][3];
+            for (int c = 0; c < 4; c++) {
+                const double u = (i + (c == 1 || c == 2)) / (double)N, v = (k + (c >= 2)) / (double)N;
+                p[c][0] = 0.5 + 0.1 * sin(7.0 * u) * cos(5.0 * v);
+                p[c][1] = u;
+                p[c][2] = v;
+            }
+            add_triangle(&s, p[0], p[1], p[2]);
+            add_triangle(&s, p[0], p[2], p[3]);
+        }
+    world w = make_world(&s);
+    rg_seen seen = {0};
+    rg_cover *cover = NULL;
+    rg_lit_scratch *scratch = rg_lit_scratch_new();
+    size_t n_state[3] = {0};
+    ck_assert(rg_seen_new(&seen, w.mesh, NULL) == RG_OK && rg_cover_new(&cover, w.mesh, NULL) == RG_OK);
+    for (int n = 0; n < 12; n++) {
+        const rg_view view = rg_view_of_deg(30.0 * n + 0.7 * _i, 25.0 * (n % 5) - 50.0);
+        rg_seen_turn(&seen, w.mesh, &view);
+        rg_cover_draw(cover, w.mesh, &seen);
+        for (uint32_t f = 0; f < w.mesh->n_facets; f++) {
+            rg_face face;
+            rg_polygons cut = {0}, found = {0};
+            double cut_area2 = 0.0, found_area2 = 0.0, open_m[4];
+            if (!rg_face_seen(&face, w.mesh, &seen, f)) continue;
+            ck_assert(rg_lit_part(w.scene, &seen, &face, &rg_whole_facet, NULL, 1e-4, scratch, &cut));
+            ck_assert(rg_lit_from_afar(w.scene, &seen, cover, &face, &rg_whole_facet, 1e-4, scratch, &found));
+            for (size_t i = 0; i < cut.n; i++) cut_area2 += rg_polygon_area2(&cut.polygon[i]);
+            for (size_t i = 0; i < found.n; i++) found_area2 += rg_polygon_area2(&found.polygon[i]);
+            ck_assert_msg(fabs(cut_area2 - found_area2) < 1e-11, "facet %u, view %d: lit share %.15g, by the cover %.15g", f, n, cut_area2, found_area2);
+            n_state[rg_cover_of(cover, &face, open_m)]++;
+            free(cut.polygon);
+            free(found.polygon);
+        }
+    }
+    ck_assert(n_state[RG_COVER_LIT] > 100 && n_state[RG_COVER_DARK] > 30);      /* or nothing was put to the test */
+    rg_lit_scratch_free(scratch);
+    rg_cover_free(cover);
+    rg_seen_free(&seen);
+    free_world(&w);
+}
+END_TEST
+
 int main(void)
 {
     Suite *suite = suite_create("lit");
@@ -225,6 +283,7 @@ int main(void)
     tcase_add_loop_test(tests, known_shadows, 0, 5);
     tcase_add_test(tests, a_crowd_of_tiny_occluders);
     tcase_add_loop_test(tests, one_plane_is_lit_once, 0, 5);
+    tcase_add_loop_test(tests, the_cover_claims_nothing_else, 0, 6);
     tcase_add_test(tests, planes_that_cross);
     tcase_add_test(tests, a_grating);
     suite_add_tcase(suite, tests);
